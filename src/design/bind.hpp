@@ -1,0 +1,77 @@
+// src/design/bind.hpp - from the text of a design to the columns of a design matrix.
+//
+// The way of a design: parse() knows the language only; bind() knows the table's columns and expands sets with every level that
+// occurs in the file (the provisional design); after the scan settle() takes out the levels that no used row has and, for
+// levels(), the one left out. The provisional columns are a superset of the final ones, in the same relative order.
+#pragma once
+
+#include <cstdint>
+#include <memory>
+#include <string>
+#include <utility>
+#include <vector>
+
+#include "base/result.hpp"
+#include "design/design.hpp"
+#include "table/survey.hpp"
+
+namespace gramproof::design {
+
+/// What the analyst asks for. Texts are as given; `*_where` names them in messages ("--design", or the file's name).
+struct Request {
+  std::string design = "constant, rest";
+  std::string design_where = "--design";
+  std::string rows;                        ///< --rows; empty: all
+  std::string response, weight;            ///< column names; empty: none
+  std::vector<std::string> complete, focus, protect;
+  Undefined undefined = Undefined::exclude;
+};
+
+struct Syntax;  // parse tree with places; opaque to others
+
+/// Parsed design and condition. Errors: `where:offset` with the character (from 1) and what was expected.
+[[nodiscard]] Result<std::shared_ptr<const Syntax>> parse(const Request& request);
+
+/// Names of columns inside levels(), all_levels(), steps(): their values must be listed by the survey even if numeric.
+[[nodiscard]] std::vector<std::string> columns_with_levels(const Syntax& syntax);
+
+/// Most design columns bind() may make: a larger design is refused with the count and --memory in the message.
+/// Errors: unknown names (with the nearest), text where a number is needed, a + of two sets, reserved words, ...
+[[nodiscard]] Result<Design> bind(const Syntax& syntax, const Request& request, const table::Schema& schema,
+                                  const std::string& data_name, std::size_t most_columns);
+
+/// Rows used by level: counts[s][i] belongs to level i (index into ColumnFacts::levels) of design.level_sets[s].
+using LevelCounts = std::vector<std::vector<std::uint64_t>>;
+
+struct Settled {
+  Design design;
+  std::vector<int> provisional;  ///< for each final column its index in the provisional design
+  /// For each level set the level left out (index into ColumnFacts::levels), or -1.
+  std::vector<int> left_out;
+};
+
+/// Families are assigned with `zero_one_groups`: groups of final... see families.hpp; called by the audit after the scan.
+[[nodiscard]] Settled settle(const Design& provisional, const table::Schema& schema, const LevelCounts& counts);
+
+/// Fills Design::families and DesignColumn::family. `disjoint(a, b)`: no used row has a 1 in both 0/1 columns a and b
+/// (indices of final columns): such columns coded by hand are grouped greedily in design order into one family, named
+/// after the first (methods: families).
+void assign_families(Design& design, const table::Schema& schema, const std::vector<std::vector<bool>>& never_together);
+
+/// F is under G: every column of G is a product with a factor over F's sources alone; false for families not products_only.
+[[nodiscard]] bool is_under(const Family& below, const Family& above);
+
+/// One part of a contrast: number * coefficient of a design column.
+struct ContrastPart {
+  int column = -1;
+  table::Number number;
+};
+/// Parses 'age + 80*age^2' over the labels of a settled design. Errors: unknown label with the nearest.
+[[nodiscard]] Result<std::vector<ContrastPart>> parse_contrast(const std::string& text, const Design& design,
+                                                               const table::Schema& schema);
+
+/// Resolves names of --focus and --protect (labels, or texts of terms) to design columns and sets roles.
+[[nodiscard]] Result<void> assign_roles(Design& design, const std::vector<std::string>& focus,
+                                        const std::vector<std::string>& protect);
+
+}  // namespace gramproof::design
