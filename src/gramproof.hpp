@@ -1,0 +1,8 @@
+// src/gramproof.hpp - the library in one header, for programs that use an installed copy.
+//
+// Nothing here prints, exits or keeps global state; whatever can fail returns Result<T>
+// (base/result.hpp).
+#pragma once
+
+#include "base/result.hpp"
+#include "table/source.hpp"

@@ -1,0 +1,15 @@
+// A user's program: opens the file named on its command line and prints its columns, or the error.
+#include <gramproof.hpp>
+
+#include <iostream>
+
+int main(int argc, char** argv) {
+  if (argc != 2) return 2;
+  const auto source = gramproof::table::Source::open({argv[1]}, {});
+  if (!source) {
+    std::cout << gramproof::to_line(source.error()) << '\n';
+    return 1;
+  }
+  for (const std::string& name : source.value().column_names()) std::cout << name << '\n';
+  return 0;
+}
