@@ -4,50 +4,70 @@ namespace gramproof::audit {
 
 std::string word_of(Grade grade) {
   switch (grade) {
-    case Grade::pass: return "pass";
-    case Grade::caution: return "caution";
-    case Grade::fail: break;
+    case Grade::pass:
+      return "pass";
+    case Grade::caution:
+      return "caution";
+    case Grade::fail:
+      break;
   }
   return "fail";
 }
 
 std::string word_of(Overall overall) {
   switch (overall) {
-    case Overall::singular: return "singular";
-    case Overall::unreliable: return "unreliable";
-    case Overall::fragile: return "fragile";
-    case Overall::guarded: return "guarded";
-    case Overall::sound: break;
+    case Overall::singular:
+      return "singular";
+    case Overall::unreliable:
+      return "unreliable";
+    case Overall::fragile:
+      return "fragile";
+    case Overall::guarded:
+      return "guarded";
+    case Overall::sound:
+      break;
   }
   return "sound";
 }
 
 std::string word_of(Standing standing) {
   switch (standing) {
-    case Standing::exact: return "exact";
-    case Standing::exact_except: return "exact_except";
-    case Standing::near: break;
+    case Standing::exact:
+      return "exact";
+    case Standing::exact_except:
+      return "exact_except";
+    case Standing::near:
+      break;
   }
   return "near";
 }
 
 std::string word_of(CentredBy centred_by) {
   switch (centred_by) {
-    case CentredBy::column: return "column";
-    case CentredBy::span: return "span";
-    case CentredBy::none: break;
+    case CentredBy::column:
+      return "column";
+    case CentredBy::span:
+      return "span";
+    case CentredBy::none:
+      break;
   }
   return "none";
 }
 
 std::string word_of(Step::How how) {
   switch (how) {
-    case Step::How::decimals: return "decimals";
-    case Step::How::binary: return "binary";
-    case Step::How::whole: return "whole";
-    case Step::How::exact_code: return "exact_code";
-    case Step::How::given: return "given";
-    case Step::How::given_exact: break;
+    case Step::How::decimals:
+      return "decimals";
+    case Step::How::binary:
+      return "binary";
+    case Step::How::whole:
+      return "whole";
+    case Step::How::exact_code:
+      return "exact_code";
+    case Step::How::given:
+      return "given";
+    case Step::How::given_exact:
+      break;
   }
   return "given_exact";
 }

@@ -16,18 +16,19 @@ namespace gramproof::scan {
 
 /// Weighted summary of one design column over the rows used.
 struct ColumnRecord {
-  double mean = 0;     ///< sum w x / sum w
+  double mean = 0;  ///< sum w x / sum w
   double min = 0, max = 0;
   std::uint64_t nonzero_rows = 0;
 };
 
-/// Sum over rows of w g g' for the derivatives g_j = d x_ij / d cell of the design columns that depend on one table column.
-/// `absolute` is for steps common to the column, `relative` (with w cell^2) for steps proportional to the cell. Entry (a, b) is
-/// to be read times 2^(exponents[a] + exponents[b]), and `relative` besides times 4^cell_exponent.
+/// Sum over rows of w g g' for the derivatives g_j = d x_ij / d cell of the design columns that
+/// depend on one table column. `absolute` is for steps common to the column, `relative` (with w
+/// cell^2) for steps proportional to the cell. Entry (a, b) is to be read times 2^(exponents[a] +
+/// exponents[b]), and `relative` besides times 4^cell_exponent.
 struct SourceNoise {
-  int column = -1;               ///< table column
-  std::vector<int> dependents;   ///< design columns
-  Matrix absolute, relative;     ///< dependents x dependents
+  int column = -1;              ///< table column
+  std::vector<int> dependents;  ///< design columns
+  Matrix absolute, relative;    ///< dependents x dependents
   std::vector<int> exponents;
   int cell_exponent = 0;
 };
@@ -36,17 +37,19 @@ struct Digest {
   std::uint64_t rows_read = 0;
   std::uint64_t rows_used = 0;
   std::vector<design::Exclusion> excluded;
-  double sum_of_weights = 0;                 ///< rows used when unweighted
-  factor::Factor factor;                     ///< of the design columns, then one column of ones
+  double sum_of_weights = 0;  ///< rows used when unweighted
+  factor::Factor factor;      ///< of the design columns, then one column of ones
   std::vector<ColumnRecord> columns;
   design::LevelCounts level_counts;
   std::vector<SourceNoise> noise;
-  std::vector<std::vector<bool>> never_together;  ///< design columns a, b both zero_one: no used row has both 1
-  /// A deterministic sample of used rows: those with the smallest hash of their number, and for each design column the first two
-  /// rows where it is not zero. Ascending row number, each row once.
+  std::vector<std::vector<bool>>
+      never_together;  ///< design columns a, b both zero_one: no used row has both 1
+  /// A deterministic sample of used rows: those with the smallest hash of their number, and for
+  /// each design column the first two rows where it is not zero. Ascending row number, each row
+  /// once.
   table::Piece sample;
-  /// Sum over used rows of hash(row) * x_row modulo exact::prime, a design column each (0 for columns that are not exact), the ones
-  /// column last: for the rows without which X is singular.
+  /// Sum over used rows of hash(row) * x_row modulo exact::prime, a design column each (0 for
+  /// columns that are not exact), the ones column last: for the rows without which X is singular.
   std::vector<std::uint64_t> random_combination;
 };
 
