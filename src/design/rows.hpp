@@ -52,4 +52,7 @@ void count_levels(const Design& design, const table::Schema& schema, const table
 /// exp or asinh is decided by their doubles.
 [[nodiscard]] std::optional<mpq_class> exact_value(const Expression& expression, const table::Piece& piece, std::size_t row);
 
+/// The exact value of a cell or of a number written in a design.
+[[nodiscard]] mpq_class exact_number(const table::Number& number);
+
 }  // namespace gramproof::design

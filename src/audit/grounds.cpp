@@ -1,0 +1,153 @@
+#include <fmt/format.h>
+
+#include <algorithm>
+#include <cmath>
+
+#include "audit/verdict.hpp"
+#include "base/text.hpp"
+
+namespace gramproof::audit {
+namespace {
+
+const Thresholds thresholds;
+
+std::vector<std::string> labels(const Audit& audit, const std::vector<int>& columns) {
+  std::vector<std::string> names;
+  for (const int column : columns)
+    names.push_back(audit.design.columns[static_cast<std::size_t>(column)].label);
+  return names;
+}
+
+std::vector<std::string> unproved_columns(const Audit& audit) {
+  std::vector<std::string> names;
+  for (const design::DesignColumn& column : audit.design.columns) {
+    if (!column.exact) names.push_back(column.label);
+  }
+  return names;
+}
+
+/// "below sqrt(2)" and its like: value against limits, worst first.
+Grade grade_below(double value, double fail, double caution) {
+  if (value < fail) return Grade::fail;
+  return value < caution ? Grade::caution : Grade::pass;
+}
+
+/// Whole digits that can be counted on, in words.
+std::string digits_in_words(double digits) {
+  const int whole = static_cast<int>(std::floor(digits));
+  if (whole < 1) return "no digit";
+  return "about " + counted(static_cast<std::uint64_t>(whole), "digit", "digits");
+}
+
+struct RatioReading {
+  Grade grade = Grade::pass;
+  double ratio = 0;
+  bool any = false;
+  const std::vector<int>* direction = nullptr;
+};
+
+RatioReading read_ratios(const Vector& ratios, const std::vector<int>& direction) {
+  RatioReading reading;
+  reading.direction = &direction;
+  if (ratios.size() == 0) return reading;
+  reading.any = true;
+  reading.ratio = ratios[0];
+  reading.grade = grade_below(reading.ratio, thresholds.ratio_fail, thresholds.ratio_caution);
+  return reading;
+}
+
+std::string ratio_sentence(const Audit& audit, const RatioReading& reading) {
+  return fmt::format(
+      "In one direction, {}, the columns differ by only {} times what the rounding of the recorded "
+      "numbers alone would "
+      "make (distance ratio; rounding alone gives about 1, below 1.4 at least half of the "
+      "difference is rounding, below 3 "
+      "a ninth: our own limits).",
+      names_in_words(labels(audit, *reading.direction)), figure(reading.ratio));
+}
+
+}  // namespace
+
+Ground identified_ground(const Audit& audit) {
+  if (audit.rank.nullity > 0) {
+    std::string finding = fmt::format(
+        "{} of {} {} by the others, proved in exact arithmetic on all {} rows used",
+        grouped(audit.rank.nullity), counted(audit.rank.columns, "column", "columns"),
+        audit.rank.nullity == 1 ? "is determined" : "are determined", grouped(audit.rows_used));
+    const auto first = std::find_if(
+        audit.relations.begin(), audit.relations.end(), [](const RelationFinding& finding_) {
+          return finding_.standing == Standing::exact && !finding_.text.empty();
+        });
+    if (first != audit.relations.end()) finding += ": " + first->text;
+    if (audit.rank.nullity > 1) finding += fmt::format(" (and {} more)", audit.rank.nullity - 1);
+    return {Grade::fail, finding + "."};
+  }
+  if (audit.rank.proved) {
+    return {
+        Grade::pass,
+        fmt::format("{} linearly independent on the {} rows used: proved in exact arithmetic, no "
+                    "tolerance decides it.",
+                    audit.rank.columns == 1 ? "The only column is"
+                                            : "All " + grouped(audit.rank.columns) + " columns are",
+                    grouped(audit.rows_used))};
+  }
+  return {Grade::pass,
+          fmt::format("No exact relation holds among the columns in plain decimals on the {} rows "
+                      "used; {} count as "
+                      "independent of the others, which is not proved.",
+                      grouped(audit.rows_used), names_in_words(unproved_columns(audit)))};
+}
+
+Ground computable_ground(const Audit& audit) {
+  const bool normal = audit.solver == Solver::normal;
+  const Digits& digits = audit.conditioning.digits;
+  const double kept = normal ? digits.normal_equations : digits.qr;
+  const Grade grade = grade_below(kept, thresholds.digits_fail, thresholds.digits_caution);
+  const std::string condition = audit.conditioning.known_digits < 1
+                                    ? std::string("beyond what double precision can tell")
+                                    : figure(audit.conditioning.condition_number);
+  return {grade,
+          fmt::format(
+              "{} {} {} of the 16 that double precision holds ({} {}; condition number of the "
+              "unit-length "
+              "columns {}); fewer than 6 is a caution, fewer than 3 a failure (our own choice).",
+              normal ? "Solving by the normal equations" : "Solving by QR", "keeps",
+              digits_in_words(kept), normal ? "QR would keep" : "the normal equations would keep",
+              digits_in_words(normal ? digits.qr : digits.normal_equations), condition)};
+}
+
+Ground recorded_ground(const Audit& audit) {
+  const Recording& recording = audit.recording;
+  const RatioReading exact = read_ratios(recording.distance_ratios, recording.direction);
+  const RatioReading rounded =
+      read_ratios(recording.distance_ratios_whole_rounded, recording.direction_whole_rounded);
+  if (exact.grade != Grade::pass) return {exact.grade, ratio_sentence(audit, exact)};
+  if (rounded.any && rounded.grade != Grade::pass) {
+    return {Grade::caution, ratio_sentence(audit, rounded) +
+                                " That holds only if whole numbers are rounded values; if they are "
+                                "exact counts or codes, say so with "
+                                "--recorded COLUMN=exact and this caution goes."};
+  }
+  if (!exact.any && !rounded.any) {
+    return {Grade::pass, "No column carries rounding that could move the design."};
+  }
+  const double ratio =
+      rounded.any && (!exact.any || rounded.ratio < exact.ratio) ? rounded.ratio : exact.ratio;
+  return {Grade::pass, fmt::format("Singularity is {} times farther away than the rounding of the "
+                                   "recorded numbers (distance ratio; "
+                                   "below 3 is a caution, below 1.4 a failure: our own choice).",
+                                   figure(ratio))};
+}
+
+Overall overall_of(const Grounds& grounds) {
+  if (grounds.identified.grade == Grade::fail) return Overall::singular;
+  if (grounds.computable.grade == Grade::fail || grounds.recorded.grade == Grade::fail)
+    return Overall::unreliable;
+  if (grounds.informative.grade == Grade::fail) return Overall::fragile;
+  const bool caution =
+      grounds.identified.grade == Grade::caution || grounds.computable.grade == Grade::caution ||
+      grounds.recorded.grade == Grade::caution || grounds.informative.grade == Grade::caution;
+  return caution ? Overall::guarded : Overall::sound;
+}
+
+}  // namespace gramproof::audit

@@ -1,0 +1,293 @@
+#include "audit/run.hpp"
+
+#include <fmt/format.h>
+
+#include <algorithm>
+#include <cmath>
+#include <utility>
+
+#include "audit/exceptions.hpp"
+#include "audit/figures.hpp"
+#include "audit/identification.hpp"
+#include "audit/verdict.hpp"
+#include "base/text.hpp"
+#include "exact/relations.hpp"
+#include "scan/pass.hpp"
+#include "table/survey.hpp"
+
+namespace gramproof::audit {
+namespace {
+
+std::function<void(const table::Progress&)> progress_of(const Request& request,
+                                                        const std::string& pass) {
+  if (!request.on_progress) return {};
+  return [&request, pass](const table::Progress& progress) { request.on_progress(pass, progress); };
+}
+
+std::string reason_words(const design::Exclusion& entry, const table::Schema& schema,
+                         const design::Design& design) {
+  using Reason = design::Exclusion::Reason;
+  const auto at = static_cast<std::size_t>(std::max(entry.column, 0));
+  switch (entry.reason) {
+    case Reason::filter:
+      return "not kept by --rows";
+    case Reason::missing:
+      return "missing in \"" + schema.columns[at].name + "\"";
+    case Reason::undefined:
+      return "undefined in " + design.columns[at].label;
+    case Reason::weight_zero:
+      break;
+  }
+  return "weight 0";
+}
+
+Error no_row_left(const scan::Digest& digest, const table::Schema& schema,
+                  const design::Design& design) {
+  std::string counts;
+  for (const design::Exclusion& entry : digest.excluded) {
+    if (!counts.empty()) counts += "; ";
+    counts += reason_words(entry, schema, design) + ": " + grouped(entry.rows);
+  }
+  return {ErrorKind::data, "",
+          fmt::format("none of the {} can be used: {}", counted(digest.rows_read, "row", "rows"),
+                      counts),
+          "a row is used only if every column of the design, the response, the weight and "
+          "--complete is present in it"};
+}
+
+Result<std::vector<std::pair<int, double>>> steps_given(const Request& request,
+                                                        const table::Schema& schema) {
+  std::vector<std::pair<int, double>> steps;
+  for (const RecordedStep& given : request.recorded) {
+    const std::optional<std::size_t> column = schema.find(given.column);
+    if (!column) {
+      std::vector<std::string> names;
+      for (const table::ColumnFacts& facts : schema.columns) names.push_back(facts.name);
+      const std::optional<std::string> near = nearest_name(given.column, names);
+      return Error{ErrorKind::usage, "--recorded", "no column \"" + given.column + "\" in the data",
+                   near ? "did you mean \"" + *near + "\"?" : ""};
+    }
+    steps.emplace_back(static_cast<int>(*column), given.step);
+  }
+  return steps;
+}
+
+void fill_source(const table::Source& source, Audit& audit) {
+  const auto& files = source.files();
+  for (std::size_t i = 0; i < files.size(); ++i) {
+    audit.source.files.emplace_back(files[i].name, audit.schema.rows_of_file[i]);
+  }
+  audit.source.separator = source.separator();
+  audit.source.decimal_mark = source.decimal_mark();
+  audit.source.missing = source.missing();
+}
+
+void fill_from_digest(const scan::Digest& digest, Audit& audit) {
+  audit.rows_read = digest.rows_read;
+  audit.rows_used = digest.rows_used;
+  audit.excluded = digest.excluded;
+  audit.sum_of_weights = digest.sum_of_weights;
+  audit.column_records = digest.columns;
+  const Vector lengths = factor::column_lengths(digest.factor);
+  audit.column_norms = lengths.head(static_cast<Index>(digest.columns.size()));
+}
+
+CentredBy centred_by(const Identification& found, const design::Design& design) {
+  if (!found.constant_in_span) return CentredBy::none;
+  const bool column =
+      found.constant_support.size() == 1 &&
+      design.columns[static_cast<std::size_t>(found.constant_support.front())].constant;
+  return column ? CentredBy::column : CentredBy::span;
+}
+
+void fill_identification(Identification found, Audit& audit) {
+  audit.rank = std::move(found.rank);
+  audit.kept = std::move(found.kept);
+  audit.left_out = std::move(found.left_out);
+  audit.relations = std::move(found.relations);
+  audit.relations_omitted = found.relations_omitted;
+  audit.passes += found.passes;
+  audit.centred_by = centred_by(found, audit.design);
+  if (audit.centred_by == CentredBy::span) {
+    for (const int column : found.constant_support) {
+      audit.constant_from.push_back(audit.design.columns[static_cast<std::size_t>(column)].label);
+    }
+  }
+  audit.residual_degrees_of_freedom =
+      static_cast<std::int64_t>(audit.rows_used) - static_cast<std::int64_t>(audit.rank.rank);
+}
+
+void fill_figures(const scan::Digest& digest, const std::vector<int>& constant_support,
+                  const std::vector<std::pair<int, double>>& given, Audit& audit) {
+  std::vector<bool> is_constant;
+  for (const int column : audit.kept) {
+    const scan::ColumnRecord& record = digest.columns[static_cast<std::size_t>(column)];
+    is_constant.push_back(record.min == record.max);
+  }
+  audit.conditioning = conditioning_of(digest.factor, audit.kept, is_constant);
+  audit.inflation = inflation_of(digest.factor, audit.kept, is_constant, audit.centred_by);
+  audit.between = between_families(digest.factor, audit.design, audit.kept, constant_support);
+  audit.recording = recording_of(digest, audit.kept, recorded_steps(digest, audit.schema, given));
+  for (RelationFinding& near : near_relations(digest.factor, audit.design, audit.kept,
+                                              audit.conditioning, most_relations)) {
+    audit.relations.push_back(std::move(near));
+  }
+}
+
+/// Estimable: orthogonal to every exact relation (Silvey 1969), decided in integers.
+ContrastFinding contrast_finding(const std::string& text,
+                                 const std::vector<design::ContrastPart>& parts,
+                                 const std::vector<exact::NullVector>& null_space,
+                                 const scan::Digest& digest, const Audit& audit) {
+  ContrastFinding finding;
+  finding.text = text;
+  finding.estimable = true;
+  for (const exact::NullVector& relation : null_space) {
+    mpq_class product = 0;
+    for (const design::ContrastPart& part : parts) {
+      product +=
+          design::exact_number(part.number) * relation[static_cast<std::size_t>(part.column)];
+    }
+    if (product == 0) continue;
+    finding.estimable = false;
+    finding.blocking_relation = exact::equation(audit.design, relation);
+    return finding;
+  }
+  Vector coefficients = Vector::Zero(static_cast<Index>(audit.kept.size()));
+  for (std::size_t i = 0; i < audit.kept.size(); ++i) {
+    for (const design::ContrastPart& part : parts) {
+      if (part.column == audit.kept[i]) coefficients[static_cast<Index>(i)] += part.number.value;
+    }
+  }
+  finding.standard_error_per_sigma = contrast_error(digest.factor, audit.kept, coefficients);
+  return finding;
+}
+
+Result<void> fill_contrasts(const Request& request,
+                            const std::vector<exact::NullVector>& null_space,
+                            const scan::Digest& digest, Audit& audit) {
+  for (const std::string& text : request.contrasts) {
+    Result<std::vector<design::ContrastPart>> parts =
+        design::parse_contrast(text, audit.design, audit.schema);
+    if (!parts) return parts.error();
+    audit.contrasts.push_back(contrast_finding(text, parts.value(), null_space, digest, audit));
+  }
+  return {};
+}
+
+void add_notes(Audit& audit) {
+  audit.notes = audit.design.notes;
+  if (audit.centred_by == CentredBy::none) {
+    audit.notes.insert(audit.notes.begin(), {"no_constant",
+                                             "The design has no constant and no combination of its "
+                                             "columns is one: the fit is forced through the "
+                                             "origin, and inflation figures are uncentred.",
+                                             {}});
+  }
+}
+
+struct Bound {
+  table::Schema schema;
+  design::Settled settled;
+  scan::Digest digest;
+};
+
+/// Survey, bind, fold, settle.
+Result<Bound> scan_design(table::Source& source, const Request& request) {
+  Result<std::shared_ptr<const design::Syntax>> syntax = design::parse(request.design);
+  if (!syntax) return syntax.error();
+  table::SurveyOptions survey_options;
+  survey_options.threads = request.threads;
+  survey_options.list_values = design::columns_with_levels(*syntax.value());
+  survey_options.on_progress = progress_of(request, "reading types and levels");
+  Result<table::Schema> schema = table::survey(source, survey_options);
+  if (!schema) return schema.error();
+  const std::string data_name =
+      source.files().size() == 1 ? source.files().front().name : "the data";
+  Result<design::Design> provisional =
+      design::bind(*syntax.value(), request.design, schema.value(), data_name,
+                   most_columns(request.memory, request.threads));
+  if (!provisional) return provisional.error();
+  const scan::PassOptions pass{request.threads, progress_of(request, "folding rows")};
+  Result<scan::Digest> digest = scan::scan(source, schema.value(), provisional.value(), pass);
+  if (!digest) return digest.error();
+  if (digest.value().rows_used == 0)
+    return no_row_left(digest.value(), schema.value(), provisional.value());
+  Bound bound;
+  bound.settled = design::settle(provisional.value(), schema.value(), digest.value().level_counts);
+  if (bound.settled.design.columns.empty()) {
+    return Error{ErrorKind::design, request.design.design_where,
+                 "the design has no column on the rows used",
+                 "a factor with one level left gives none; add `constant` or another term"};
+  }
+  bound.digest = scan::settle(digest.value(), bound.settled);
+  bound.schema = std::move(schema.value());
+  Result<void> roles =
+      design::assign_roles(bound.settled.design, request.design.focus, request.design.protect);
+  if (!roles) return roles.error();
+  design::assign_families(bound.settled.design, bound.schema, bound.digest.never_together);
+  return bound;
+}
+
+}  // namespace
+
+Result<Audit> run(table::Source& source, const Request& request) {
+  Result<Bound> scanned = scan_design(source, request);
+  if (!scanned) return scanned.error();
+  Bound& bound = scanned.value();
+  const Result<std::vector<std::pair<int, double>>> given = steps_given(request, bound.schema);
+  if (!given) return given.error();
+  std::vector<std::string> file_names;
+  for (const table::SourceFile& file : source.files()) file_names.push_back(file.name);
+  const scan::PassOptions pass{request.threads,
+                               progress_of(request, "proving relations on every row")};
+  const RowTester tester = [&](const std::vector<exact::NullVector>& vectors) {
+    return scan::test_on_all_rows(source, bound.schema, bound.settled.design, vectors, pass);
+  };
+  Result<Identification> found =
+      identify(bound.settled.design, bound.schema, file_names, bound.digest, tester);
+  if (!found) return found.error();
+  Audit audit;
+  audit.options = request.options;
+  audit.solver = request.solver;
+  audit.schema = std::move(bound.schema);
+  audit.design = std::move(bound.settled.design);
+  fill_source(source, audit);
+  fill_from_digest(bound.digest, audit);
+  const std::vector<exact::NullVector> null_space = found.value().null_space;
+  const std::vector<int> constant_support = found.value().constant_support;
+  const std::vector<int> lost = found.value().coefficients_lost;
+  fill_identification(std::move(found.value()), audit);
+  audit.rare_levels = rare_levels(audit.design, audit.schema, bound.digest, bound.settled.left_out);
+  fill_figures(bound.digest, constant_support, given.value(), audit);
+  if (Result<void> done = fill_contrasts(request, null_space, bound.digest, audit); !done)
+    return done.error();
+  add_notes(audit);
+  audit.verdict = verdict_of(audit, lost);
+  return audit;
+}
+
+/// A leaf block and its extended copy in each thread (4,096 rows), the factors under way between
+/// threads and in the merge tree (2 threads + 2, and a dozen levels for 2^24 rows), and about a
+/// dozen k x k matrices in the figures.
+std::uint64_t memory_needed(std::size_t columns, unsigned threads) {
+  const std::uint64_t k = columns + 1;
+  const std::uint64_t blocks = std::uint64_t{2} * threads * table::rows_a_piece * k;
+  const std::uint64_t factors = (std::uint64_t{2} * threads + 2 + 12 + 12) * k * k;
+  return 8 * (blocks + factors);
+}
+
+std::size_t most_columns(std::uint64_t memory, unsigned threads) {
+  std::size_t low = 1, high = 1'000'000;
+  while (low < high) {
+    const std::size_t middle = (low + high + 1) / 2;
+    if (memory_needed(middle, threads) <= memory) {
+      low = middle;
+    } else {
+      high = middle - 1;
+    }
+  }
+  return low;
+}
+
+}  // namespace gramproof::audit
