@@ -4,5 +4,6 @@
 // (base/result.hpp).
 #pragma once
 
+#include "base/numeric.hpp"
 #include "base/result.hpp"
 #include "table/source.hpp"

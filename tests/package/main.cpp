@@ -3,6 +3,10 @@
 
 #include <iostream>
 
+// A vector that the library allocates and this program frees needs the same alignment on both
+// sides, whatever instruction set either was compiled for.
+static_assert(EIGEN_MAX_ALIGN_BYTES == 64 && EIGEN_MAX_STATIC_ALIGN_BYTES == 64);
+
 int main(int argc, char** argv) {
   if (argc != 2) return 2;
   const auto source = gramproof::table::Source::open({argv[1]}, {});
