@@ -1,0 +1,231 @@
+// Near relations and the figures behind them: condition indices, who shares in them, what is left
+// of double precision.
+#include <algorithm>
+#include <cmath>
+#include <limits>
+
+#include <fmt/format.h>
+
+#include "base/text.hpp"
+#include "report/number_text.hpp"
+#include "report/text_parts.hpp"
+
+namespace gramproof::report {
+namespace {
+
+using audit::RelationFinding;
+using audit::Standing;
+
+// [BKW80] ch. 3: an index of 30 is a strong relation, one of 10 a weak one; a column competes where
+// at least half the variance of its coefficient comes from the direction.
+constexpr double strong_index = 30;
+constexpr double weak_index = 10;
+constexpr double large_proportion = 0.5;
+
+std::string index_text(const audit::Audit& audit, double index) {
+  return size_or_bound(index, known_digits_of_index(audit, index), largest_known_condition(audit));
+}
+
+/// Rows of `proportions` with an index at least `threshold`.
+std::vector<Index> rows_from(const Vector& indices, double threshold) {
+  std::vector<Index> rows;
+  for (Index i = 0; i < indices.size(); ++i) {
+    if (!(indices[i] < threshold)) rows.push_back(i);
+  }
+  return rows;
+}
+
+/// Columns of `proportions` whose sum over `rows` reaches one half.
+std::vector<int> sharing(const Matrix& proportions, const std::vector<Index>& rows) {
+  std::vector<int> columns;
+  for (Index j = 0; j < proportions.cols(); ++j) {
+    double sum = 0;
+    for (const Index i : rows) {
+      if (i < proportions.rows()) sum += proportions(i, j);
+    }
+    if (sum >= large_proportion) columns.push_back(static_cast<int>(j));
+  }
+  return columns;
+}
+
+/// Columns for whose coefficients the strong indices together account for half the variance.
+std::vector<int> competing_columns(const audit::Audit& audit) {
+  const audit::Conditioning& conditioning = audit.conditioning;
+  std::vector<int> columns;
+  for (const int place :
+       sharing(conditioning.proportions, rows_from(conditioning.condition_indices, strong_index))) {
+    columns.push_back(audit.kept.at(static_cast<std::size_t>(place)));
+  }
+  return columns;
+}
+
+void write_near_relations(const audit::Audit& audit, Page& page) {
+  std::vector<const RelationFinding*> relations;
+  for (const RelationFinding& relation : audit.relations) {
+    if (relation.standing == Standing::near) relations.push_back(&relation);
+  }
+  const std::size_t told = std::min<std::size_t>(relations.size(), 5);
+  for (std::size_t i = 0; i < told; ++i) {
+    const RelationFinding& relation = *relations[i];
+    page.blank();
+    page.cut(fmt::format("{}. {}", i + 1, relation.text), most_lines_of_an_equation,
+             fmt::format("... ({} in all)", counted(relation.terms.size(), "column", "columns")),
+             2);
+    std::string text =
+        fmt::format("Condition index {}.", index_text(audit, relation.condition_index));
+    if (!relation.cause_text.empty()) text += " " + relation.cause_text;
+    page.paragraph(text, 5);
+  }
+  if (relations.size() == told) return;
+  page.blank();
+  page.paragraph(fmt::format("{} not shown here; the JSON document lists them.",
+                             counted_are(relations.size() - told, "further near relation",
+                                         "further near relations")),
+                 2);
+}
+
+std::string plural_of_indices(std::size_t number) {
+  return counted(number, "index", "indices");
+}
+
+/// How many directions of the column space are weak, in one sentence.
+std::string indices_sentence(const audit::Audit& audit) {
+  const audit::Conditioning& conditioning = audit.conditioning;
+  const std::size_t all = static_cast<std::size_t>(conditioning.condition_indices.size());
+  const std::size_t strong = rows_from(conditioning.condition_indices, strong_index).size();
+  const std::size_t weak = rows_from(conditioning.condition_indices, weak_index).size() - strong;
+  if (strong == 0 && weak == 0) {
+    return fmt::format("{} computed {} below 10.",
+                       all == 1 ? "The one index" : fmt::format("All {}", plural_of_indices(all)),
+                       all == 1 ? "is" : "are");
+  }
+  std::string text = fmt::format("Of {} computed, ", plural_of_indices(all));
+  if (strong > 0)
+    text +=
+        fmt::format("{} 30 or more", strong == 1 ? "1 is" : fmt::format("{} are", grouped(strong)));
+  if (strong > 0 && weak > 0) text += ", ";
+  if (weak > 0)
+    text += fmt::format("{} between 10 and 30",
+                        weak == 1 ? "1 is" : fmt::format("{} are", grouped(weak)));
+  return text + fmt::format(" and {} below 10.", grouped(all - strong - weak));
+}
+
+void write_uncentred_figures(const audit::Audit& audit, Page& page) {
+  page.paragraph(
+      fmt::format(
+          "Condition number: {}. It compares the longest and the shortest combination of the "
+          "kept columns, each scaled to length one; a condition index does so for one "
+          "direction at a time. {}",
+          index_text(audit, audit.conditioning.condition_number), indices_sentence(audit)),
+      2);
+  const std::vector<int> columns = competing_columns(audit);
+  if (!columns.empty()) {
+    page.paragraph(
+        fmt::format(
+            "Directions with an index of 30 or more account for at least half the variance of "
+            "the coefficient{} of {}.",
+            columns.size() == 1 ? "" : "s", names_of(audit, columns)),
+        2);
+  }
+  page.paragraph(
+      "These figures follow Belsley, Kuh & Welsch (1980): the columns are not centred, the "
+      "constant "
+      "is one of them. Centring would make most of them smaller, and Belsley (1984) objected that "
+      "it "
+      "only hides relations with the constant. The figure between families below sets the "
+      "constant aside where it can, because what a column shares with the constant alone costs "
+      "nothing about its slope; both views are shown so that the reader can judge.",
+      2);
+}
+
+std::vector<std::string> family_names(const audit::Audit& audit, const std::vector<int>& places) {
+  std::vector<std::string> names;
+  for (const int place : places) {
+    const int family = audit.between.families.at(static_cast<std::size_t>(place));
+    names.push_back("`" + audit.design.families.at(static_cast<std::size_t>(family)).name + "`");
+  }
+  return names;
+}
+
+void write_between_families(const audit::Audit& audit, Page& page) {
+  const audit::BetweenFamilies& between = audit.between;
+  if (between.indices.size() == 0) return;
+  const Index last = between.indices.size() - 1;
+  const double largest = between.indices[last];
+  std::string text = fmt::format(
+      "Between families (columns made from the same source are one family and are read together), "
+      "the largest index is {}.",
+      index_text(audit, largest));
+  if (largest >= weak_index) {
+    const auto names = family_names(audit, sharing(between.proportions, {last}));
+    if (names.size() >= 2) text += fmt::format(" It is shared by {}.", listed(names));
+    if (names.size() == 1) text += fmt::format(" It falls mainly on {}.", names[0]);
+  }
+  page.paragraph(text, 2);
+}
+
+}  // namespace
+
+void write_competing(const audit::Audit& audit, Page& page) {
+  if (audit.conditioning.condition_indices.size() == 0) return;
+  const bool near = std::any_of(audit.relations.begin(), audit.relations.end(),
+                                [](const auto& r) { return r.standing == Standing::near; });
+  page.heading(near ? "Columns that compete" : "How far the columns are from competing");
+  if (near) {
+    page.paragraph(
+        "These combinations of columns are nearly, but not exactly, in balance, so that the data "
+        "say "
+        "little about each of their coefficients and more about the combination.",
+        2);
+    write_near_relations(audit, page);
+    page.blank();
+  }
+  write_uncentred_figures(audit, page);
+  write_between_families(audit, page);
+}
+
+void write_digits(const audit::Audit& audit, Page& page) {
+  const audit::Conditioning& conditioning = audit.conditioning;
+  if (conditioning.condition_indices.size() == 0) return;
+  const auto whole = [](double digits) {
+    const auto number = static_cast<std::uint64_t>(std::clamp(std::floor(digits), 0.0, 16.0));
+    return number == 0 ? std::string("no digit") : counted(number, "digit", "digits");
+  };
+  const audit::Digits& digits = conditioning.digits;
+  page.heading("What arithmetic leaves of the figures");
+  page.paragraph(
+      fmt::format(
+          "In double precision, a program that solves the normal equations (inverts X'X) keeps "
+          "about {}, one that works on X itself by orthogonal rotations (QR) about {}. In "
+          "single precision: {} and {}. The grade above is for {}.",
+          whole(digits.normal_equations), whole(digits.qr), whole(digits.normal_equations_single),
+          whole(digits.qr_single),
+          audit.solver == audit::Solver::qr ? "QR" : "the normal equations"),
+      2);
+  page.paragraph(
+      fmt::format(
+          "In the units of the data the condition number is {}: choosing other units changes "
+          "this one, but not the one above.",
+          size_or_bound(conditioning.raw_condition_number, conditioning.known_digits_raw,
+                        largest_known_condition(audit))),
+      2);
+  // The determinant is a product of k sizes: the exponent is told only where k relative errors
+  // together stay below a quarter of a power of ten.
+  const double error =
+      static_cast<double>(audit.kept.size()) * std::pow(10, -conditioning.known_digits);
+  if (!(error < 0.25) || !std::isfinite(conditioning.log10_determinant)) return;
+  std::string text =
+      fmt::format("The determinant of X'X is {}", power_of_ten(conditioning.log10_determinant));
+  if (conditioning.log10_determinant_correlation &&
+      std::isfinite(*conditioning.log10_determinant_correlation)) {
+    text += fmt::format(", that of the correlations of the columns {}",
+                        std::abs(*conditioning.log10_determinant_correlation) < 0.5
+                            ? "close to 1"
+                            : power_of_ten(*conditioning.log10_determinant_correlation));
+  }
+  page.paragraph(
+      text + "; a determinant depends on units and on the number of columns and decides nothing.",
+      2);
+}
+
+}  // namespace gramproof::report

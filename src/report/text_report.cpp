@@ -1,0 +1,78 @@
+#include "report/text_report.hpp"
+
+#include <algorithm>
+#include <cmath>
+
+#include <fmt/format.h>
+
+#include "base/text.hpp"
+#include "report/text_parts.hpp"
+
+namespace gramproof::report {
+
+std::string name_of(const audit::Audit& audit, int column) {
+  return "`" + audit.design.columns.at(static_cast<std::size_t>(column)).label + "`";
+}
+
+std::string listed(const std::vector<std::string>& items, std::size_t most) {
+  if (items.empty()) return "";
+  // "and 1 more" takes no less room than the name itself.
+  const std::size_t told = items.size() <= most + 1 ? items.size() : most;
+  const std::size_t rest = items.size() - told;
+  std::string text = items[0];
+  for (std::size_t i = 1; i < told; ++i) {
+    text += (i + 1 == told && rest == 0) ? " and " : ", ";
+    text += items[i];
+  }
+  if (rest > 0) text += fmt::format(" and {} more", grouped(rest));
+  return text;
+}
+
+std::string names_of(const audit::Audit& audit, const std::vector<int>& columns, std::size_t most) {
+  std::vector<std::string> names;
+  names.reserve(columns.size());
+  for (const int column : columns) names.push_back(name_of(audit, column));
+  return listed(names, most);
+}
+
+std::string counted_are(std::size_t number, std::string_view singular, std::string_view plural) {
+  return counted(number, singular, plural) + (number == 1 ? " is" : " are");
+}
+
+double largest_known_condition(const audit::Audit& audit) {
+  const auto columns = static_cast<double>(std::max<std::size_t>(audit.kept.size(), 1));
+  return 1 / (64 * columns * unit_roundoff);
+}
+
+double known_digits_of_index(const audit::Audit& audit, double index) {
+  const audit::Conditioning& conditioning = audit.conditioning;
+  if (!std::isfinite(conditioning.condition_number) || !std::isfinite(conditioning.known_digits)) {
+    return std::log10(largest_known_condition(audit) / index);
+  }
+  return conditioning.known_digits + std::log10(conditioning.condition_number / index);
+}
+
+double known_digits_of_squares(const audit::Audit& audit) {
+  return audit.conditioning.known_digits - std::log10(2.0);
+}
+
+std::string text_report(const audit::Audit& audit, const TextOptions& options) {
+  Page page(static_cast<std::size_t>(std::clamp(options.width, 80, 120)), options.colour);
+  write_verdict(audit, page);
+  write_grounds(audit, page);
+  write_exact_relations(audit, page);
+  write_left_out(audit, page);
+  write_relations_with_exceptions(audit, page);
+  write_rare_levels(audit, page);
+  write_competing(audit, page);
+  write_coefficients(audit, page);
+  write_contrasts(audit, page);
+  write_digits(audit, page);
+  write_recording(audit, page);
+  write_rows(audit, page);
+  write_notes(audit, page);
+  write_cautions(page);
+  return page.text();
+}
+
+}  // namespace gramproof::report
