@@ -1,0 +1,32 @@
+// src/command/check_options.hpp - the words of `gramproof check`, understood.
+#pragma once
+
+#include <optional>
+#include <string>
+#include <vector>
+
+#include "audit/run.hpp"
+#include "base/result.hpp"
+#include "table/source.hpp"
+
+namespace gramproof::command {
+
+enum class When { automatic, always, never };
+
+struct CheckOptions {
+  std::vector<std::string> files;
+  table::ReadOptions reading;
+  audit::Request audit;
+  std::string json;  ///< path, "-" or empty
+  audit::Overall accept = audit::Overall::fragile;
+  std::optional<audit::Overall> accept_repaired;
+  When colour = When::automatic;
+  bool quiet = false;
+  bool help = false;
+};
+
+/// Arguments after `check`. Errors: unknown options (with the nearest), missing or impossible
+/// values, no file. --design-file is read here.
+[[nodiscard]] Result<CheckOptions> parse_check(std::vector<std::string> arguments);
+
+}  // namespace gramproof::command
