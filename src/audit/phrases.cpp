@@ -3,6 +3,7 @@
 #include <cmath>
 
 #include "audit/verdict.hpp"
+#include "base/text.hpp"
 
 namespace gramproof::audit {
 
@@ -18,12 +19,17 @@ std::string names_in_words(const std::vector<std::string>& names, std::size_t mo
 }
 
 std::string figure(double value, int digits) {
-  if (std::isinf(value)) return "infinite";
-  const double magnitude = std::abs(value);
-  if (magnitude != 0 && (magnitude >= 1e6 || magnitude < 1e-4))
-    return fmt::format("{:.{}e}", value, digits - 1);
-  if (magnitude >= std::pow(10.0, digits - 1)) return fmt::format("{:.0f}", value);
-  return fmt::format("{:.{}g}", value, digits);
+  if (!std::isfinite(value)) return "infinite";
+  if (value == 0) return "0";
+  const int exponent = static_cast<int>(std::floor(std::log10(std::abs(value))));
+  if (exponent < -4 || exponent >= 6) {
+    const double mantissa = value / std::pow(10.0, exponent);
+    return fmt::format("{:.{}f}e{}", mantissa, digits - 1, exponent);
+  }
+  if (exponent < digits - 1) return fmt::format("{:.{}f}", value, digits - 1 - exponent);
+  const double unit = std::pow(10.0, exponent - digits + 1);
+  return (value < 0 ? "-" : "") +
+         grouped(static_cast<std::uint64_t>(std::abs(std::round(value / unit) * unit)));
 }
 
 }  // namespace gramproof::audit

@@ -33,8 +33,8 @@ std::string fate_of_coefficients(const Audit& audit, const std::vector<int>& los
   }
   const std::size_t others = audit.design.columns.size() - lost.size();
   if (others == 0) return "no coefficient can be read as written";
-  return fmt::format("the {} outside the relations {} unaffected",
-                     counted(others, "coefficient", "coefficients"), others == 1 ? "is" : "are");
+  if (others == 1) return "the other coefficient is unaffected";
+  return fmt::format("the {} other coefficients are unaffected", grouped(others));
 }
 
 std::string singular_summary(const Audit& audit, Overall after, const std::vector<int>& lost) {

@@ -38,8 +38,7 @@ struct Thresholds {
 [[nodiscard]] std::string names_in_words(const std::vector<std::string>& names,
                                          std::size_t most = 3);
 
-/// A positive figure with at most `digits` significant digits, never in more than plain words:
-/// "14", "2.3", "4.7e+10".
+/// A figure rounded to `digits` significant digits: "14", "2.3", "120,000", "4.7e10".
 [[nodiscard]] std::string figure(double value, int digits = 2);
 
 }  // namespace gramproof::audit
