@@ -33,6 +33,8 @@ struct RawPiece {
   std::size_t file = 0;
   std::uint64_t first_row = 0;   ///< row number of the first record, from 1 over all files
   std::uint64_t first_line = 0;  ///< its line in its file
+  std::size_t records = 0;
+  bool cut = false;  ///< the last record is over the limit of 64 MB: parse_piece and survey report it
   std::string bytes;
 };
 
@@ -72,7 +74,12 @@ class Source {
   /// How far the present pass is.
   [[nodiscard]] Progress progress() const;
 
-  struct State;  // opaque: the reader's own
+  struct State;  // table/source_state.hpp: the reader's own
+  [[nodiscard]] const State& state() const { return *state_; }
+
+  /// False where no fraction in the first records showed the decimal mark: it is '.' then, until the survey has seen all.
+  [[nodiscard]] bool decimal_mark_certain() const;
+  void settle_decimal_mark(char mark);
 
  private:
   explicit Source(std::unique_ptr<State> state);

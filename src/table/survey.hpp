@@ -5,6 +5,7 @@
 #include <functional>
 #include <optional>
 #include <string>
+#include <string_view>
 #include <unordered_map>
 #include <vector>
 
@@ -19,6 +20,14 @@ struct Level {
   std::string text;         ///< text column: as written; numeric column: table::plain_text of the value
   Number value;             ///< numeric columns only
   std::uint64_t rows = 0;   ///< present cells with this value, over all rows
+};
+
+/// Hash of a text that also takes string views, so that cells are looked up without a copy.
+struct TextHash {
+  using is_transparent = void;
+  [[nodiscard]] std::size_t operator()(std::string_view text) const {
+    return std::hash<std::string_view>{}(text);
+  }
 };
 
 /// A cell named in a message.
@@ -47,7 +56,8 @@ struct ColumnFacts {
   std::vector<Level> levels;
   bool levels_cut = false;               ///< more distinct values than were to be listed: `levels` is then empty
   std::uint64_t distinct_at_least = 0;   ///< number of distinct values, a lower bound when cut
-  std::unordered_map<std::string, std::int32_t> code_of;  ///< text -> index into levels (text columns)
+  /// Level::text -> index into levels. Look-ups take string views.
+  std::unordered_map<std::string, std::int32_t, TextHash, std::equal_to<>> code_of;
 };
 
 struct Schema {
