@@ -125,10 +125,10 @@ Result<std::vector<RelationFinding>> relations_but_for_rows(const ExceptionSearc
   const std::vector<std::size_t> essential = exact::essential_rows(
       search.design, search.digest.sample, search.rank, search.digest.random_combination);
   if (essential.empty()) return findings;
-  const exact::ExactRows sample = exact::exact_rows(search.design, search.digest.sample);
   std::vector<exact::NullVector> vectors;
   for (const std::size_t row : essential) {
-    exact::NullVector vector = exact::relation_without_row(sample, search.rank, row);
+    exact::NullVector vector =
+        exact::relation_without_row(search.design, search.digest.sample, search.rank, row);
     // A level that rests on this row alone needs no pass: the vector is that column.
     if (relating_columns(search, vector, 1).size() >= 2) vectors.push_back(std::move(vector));
   }

@@ -28,8 +28,7 @@ Result<std::vector<scan::TestedVector>> Prover::test(
 
 Result<exact::SampleRank> Prover::rank_of(const std::vector<int>& order) {
   while (true) {
-    exact::SampleRank rank =
-        exact::rank_of_sample(exact::exact_rows(design_, digest_.sample), order);
+    exact::SampleRank rank = exact::rank_of_sample(design_, digest_.sample, order);
     if (rank.null_vectors.empty() || sample_is_everything()) return rank;
     Result<std::vector<scan::TestedVector>> tested = test(rank.null_vectors);
     if (!tested) return tested.error();
