@@ -5,8 +5,10 @@
 //   accepted   digits with an optional sign (+ or -), an optional decimal mark and an optional exponent: 1, +1, -.5, 5., 1e3
 //   blanks     leading and trailing spaces and tabs around a cell are ignored
 //   refused    nan, inf, hexadecimal floats, 1,234 (where the comma is no decimal mark), 1.2.3, --5, 1_000: text, not numbers
-//   limits     at most 1,000 significant digits; exponent of the value within +-400; a non-zero value whose double would leave
-//              1e-305 .. 1e305 (1e400, 1e-400) is a number that is out of range: an error where a term needs it
+//   zero       -0, 0.00 and 0e5 are zero; the double is never minus zero
+//   limits     at most 1,000 significant digits (too_long); a non-zero value whose double would leave 1e-305 .. 1e305 (1e400,
+//              1e-400) and a zero with more than 1,400 decimals or an exponent beyond 1,400 are numbers out of range: both are
+//              an error where a term needs the number, and none where no term does
 #pragma once
 
 #include <cstdint>

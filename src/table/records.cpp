@@ -106,13 +106,12 @@ std::size_t first_bad_byte(std::string_view bytes) {
   constexpr std::size_t block = 4096;
   for (std::size_t start = 0; start < bytes.size(); start += block) {
     const std::string_view part = bytes.substr(start, block);
-    unsigned char any = 0;
-    bool has_nul = false;
+    unsigned char any = 0, least = 0xFF;
     for (const char c : part) {
       any |= static_cast<unsigned char>(c);
-      has_nul |= c == '\0';
+      least = std::min(least, static_cast<unsigned char>(c));
     }
-    if (any < 0x80 && !has_nul) continue;
+    if (any < 0x80 && least > 0) continue;
     // Not pure ASCII: all that is left, so that no character is cut by a block's edge.
     const std::string_view rest = bytes.substr(start);
     const std::size_t nul = std::min(rest.find('\0'), rest.size());
