@@ -1,0 +1,189 @@
+// src/exact/cause.cpp
+#include "exact/cause.hpp"
+
+#include <algorithm>
+#include <array>
+#include <cctype>
+#include <optional>
+#include <set>
+#include <string_view>
+
+namespace gramproof::exact {
+namespace {
+
+using Terms = Sides::Terms;
+
+const design::DesignColumn& column_of(const Evidence& e, const Terms::value_type& term) {
+  return e.design.columns[term.first];
+}
+
+bool all_ones(const Terms& side) {
+  return std::all_of(side.begin(), side.end(), [](const auto& term) { return term.second == 1; });
+}
+
+template <class Test>
+bool all_columns(const Evidence& e, const Terms& side, Test&& test) {
+  return std::all_of(side.begin(), side.end(),
+                     [&](const auto& term) { return test(column_of(e, term)); });
+}
+
+bool all_zero_one(const Evidence& e, const Terms& side) {
+  return all_columns(e, side, [](const design::DesignColumn& c) { return c.zero_one; });
+}
+
+std::uint64_t ones_of(const Evidence& e, const Terms& side) {
+  std::uint64_t rows = 0;
+  for (const auto& term : side) rows += e.columns[term.first].nonzero_rows;
+  return rows;
+}
+
+/// The set whose levels tell the columns of a side apart, each with the same other levels; -1:
+/// none.
+int common_set(const Evidence& e, const Terms& side) {
+  if (side.size() < 2) return -1;
+  for (const design::LevelUse& candidate : column_of(e, side.front()).levels) {
+    std::set<int> levels;
+    std::set<std::set<std::pair<int, int>>> others;
+    for (const auto& term : side) {
+      std::set<std::pair<int, int>> rest;
+      for (const design::LevelUse& use : column_of(e, term).levels) {
+        if (use.set == candidate.set) {
+          levels.insert(use.level);
+        } else {
+          rest.emplace(use.set, use.level);
+        }
+      }
+      others.insert(rest);
+    }
+    if (levels.size() == side.size() && others.size() == 1) return candidate.set;
+  }
+  return -1;
+}
+
+/// True if a side's columns are the products of a full set of levels with the other side's column.
+bool products_with_full_set(const Evidence& e) {
+  const int set = common_set(e, e.sides.left);
+  if (set < 0 || e.sides.right.size() != 1 || e.sides.number != 0) return false;
+  const auto others = [set](const design::DesignColumn& column) {
+    std::set<std::pair<int, int>> rest;
+    for (const design::LevelUse& use : column.levels) {
+      if (use.set != set) rest.emplace(use.set, use.level);
+    }
+    return rest;
+  };
+  const design::DesignColumn& first = column_of(e, e.sides.left.front());
+  const design::DesignColumn& total = column_of(e, e.sides.right.front());
+  // The sources of the total are those of the products but for the set's own column.
+  std::vector<int> sources = first.sources;
+  std::erase(sources, e.design.level_sets[static_cast<std::size_t>(set)].column);
+  return others(first) == others(total) && total.sources == sources;
+}
+
+bool is_level_set(const Evidence& e) {
+  const Sides& s = e.sides;
+  if (!all_ones(s.left) || !all_ones(s.right) || s.left.size() < 2) return false;
+  if (products_with_full_set(e)) return true;
+  if (!all_zero_one(e, s.left) || !all_zero_one(e, s.right)) return false;
+  if (s.right.empty()) return s.number == 1;
+  // Two full sets: each row counts once on each side.
+  return s.number == 0 && s.right.size() >= 2 && ones_of(e, s.left) == e.rows &&
+         ones_of(e, s.right) == e.rows;
+}
+
+bool is_nested(const Evidence& e) {
+  const Sides& s = e.sides;
+  return s.number == 0 && s.left.size() >= 2 && !s.right.empty() && all_ones(s.left) &&
+         all_ones(s.right) && all_zero_one(e, s.left) && all_zero_one(e, s.right);
+}
+
+bool looks_like_year(const Evidence& e, const Terms::value_type& term) {
+  const design::DesignColumn& column = column_of(e, term);
+  const ColumnSummary& seen = e.columns[term.first];
+  if (seen.min < 1800 || seen.max > 2200 || column.sources.size() != 1) return false;
+  return e.schema.columns[static_cast<std::size_t>(column.sources.front())].all_whole;
+}
+
+/// A word of time as a part of the label: "age" in "age_at_entry", not in "wage".
+bool named_for_time(const std::string& label) {
+  constexpr std::array<std::string_view, 14> words = {
+      "age",    "birth", "born", "year",       "period",   "cohort", "wave",
+      "tenure", "time",  "date", "experience", "duration", "entry",  "start"};
+  std::string word;
+  for (const char c : label + " ") {
+    if (std::isalpha(static_cast<unsigned char>(c)) != 0) {
+      word += static_cast<char>(std::tolower(static_cast<unsigned char>(c)));
+      continue;
+    }
+    if (std::find(words.begin(), words.end(), word) != words.end()) return true;
+    word.clear();
+  }
+  return false;
+}
+
+bool is_clock(const Evidence& e) {
+  const Sides& s = e.sides;
+  if (s.columns() != 3 || s.right.size() != 1 || !all_ones(s.left) || !all_ones(s.right)) {
+    return false;
+  }
+  const std::array<Terms::value_type, 3> terms = {s.left[0], s.left[1], s.right[0]};
+  const auto count = [&](auto&& test) { return std::count_if(terms.begin(), terms.end(), test); };
+  const auto years = count([&](const auto& t) { return looks_like_year(e, t); });
+  const auto named = count([&](const auto& t) { return named_for_time(column_of(e, t).label); });
+  return years >= 2 || named >= 2;
+}
+
+std::optional<Cause> cause_of_one(const Evidence& e) {
+  const Sides& s = e.sides;
+  if (s.columns() != 1) return std::nullopt;
+  if (s.number != 0) return Cause::constant_column;
+  const design::DesignColumn& column = column_of(e, s.left.front());
+  const bool crossed =
+      column.levels.size() >= 2 || (!column.levels.empty() && column.sources.size() >= 2);
+  return crossed ? Cause::empty_cell : Cause::zero_column;
+}
+
+std::optional<Cause> cause_of_two(const Evidence& e) {
+  const Sides& s = e.sides;
+  if (s.columns() != 2) return std::nullopt;
+  if (s.right.empty() && s.number != 0) {
+    return all_ones(s.left) ? Cause::fixed_sum : Cause::unit_conversion;
+  }
+  if (s.number != 0) return Cause::unit_conversion;
+  if (s.right.empty()) return Cause::multiple;  // a + 2 b = 0
+  const mpq_class &a = s.left[0].second, &b = s.right[0].second;
+  if (a == b) return Cause::duplicate;
+  return a == 1 || b == 1 ? Cause::multiple : Cause::unit_conversion;
+}
+
+bool is_total(const Evidence& e) {
+  const Sides& s = e.sides;
+  if (s.number != 0 || s.right.size() != 1 || !all_ones(s.right) || s.left.size() < 2) return false;
+  return all_ones(s.left) && std::all_of(s.left.begin(), s.left.end(), [&](const auto& term) {
+           return e.columns[term.first].min >= 0;
+         });
+}
+
+std::uint64_t exact_columns(const design::Design& design) {
+  return static_cast<std::uint64_t>(
+      std::count_if(design.columns.begin(), design.columns.end(),
+                    [](const design::DesignColumn& c) { return c.exact; }));
+}
+
+}  // namespace
+
+Cause cause_of(const Evidence& e) {
+  if (const auto cause = cause_of_one(e)) return *cause;
+  if (is_level_set(e)) return Cause::level_set;
+  if (is_nested(e)) return Cause::nested_levels;
+  if (const auto cause = cause_of_two(e)) return *cause;
+  // With fewer rows than columns some relation holds whatever the columns mean: no story is told
+  // about one that the rows force.
+  if (e.rows < exact_columns(e.design)) return Cause::too_few_rows;
+  if (is_clock(e)) return Cause::clock_identity;
+  if (is_total(e)) return Cause::parts_and_total;
+  const bool one_side = e.sides.right.empty() && e.sides.number != 0;
+  if (one_side && all_ones(e.sides.left)) return Cause::fixed_sum;
+  return Cause::other;
+}
+
+}  // namespace gramproof::exact

@@ -1,0 +1,23 @@
+// src/exact/cause.hpp - how a relation came about, decided on its form.
+#pragma once
+
+#include "exact/relations.hpp"
+#include "exact/sides.hpp"
+
+namespace gramproof::exact {
+
+/// All that a cause is decided on.
+struct Evidence {
+  const design::Design& design;
+  const table::Schema& schema;
+  const std::vector<ColumnSummary>& columns;
+  std::uint64_t rows = 0;
+  Sides sides;
+};
+
+[[nodiscard]] Cause cause_of(const Evidence& evidence);
+
+/// One sentence, with full stop, in the analyst's words.
+[[nodiscard]] std::string sentence_of(const Evidence& evidence, Cause cause);
+
+}  // namespace gramproof::exact

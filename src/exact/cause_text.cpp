@@ -1,0 +1,189 @@
+// src/exact/cause_text.cpp - the sentence for each cause.
+#include <algorithm>
+#include <array>
+#include <utility>
+
+#include "base/text.hpp"
+#include "exact/cause.hpp"
+
+namespace gramproof::exact {
+namespace {
+
+using Terms = Sides::Terms;
+
+constexpr std::size_t most_named = 6;
+
+std::string label(const Evidence& e, const Terms::value_type& term) {
+  return e.design.columns[term.first].label;
+}
+
+/// "a, b and c"; long lists name the first few and count the others.
+std::string listed(const Evidence& e, const Terms& side) {
+  std::string text;
+  const std::size_t named = side.size() > most_named + 1 ? most_named : side.size();
+  for (std::size_t i = 0; i < named; ++i) {
+    const bool last = i + 1 == side.size();
+    text += (i == 0 ? "" : last ? " and " : ", ") + label(e, side[i]);
+  }
+  if (named < side.size()) text += " and " + std::to_string(side.size() - named) + " more";
+  return text;
+}
+
+std::string in_every_row(const Evidence& e) {
+  return e.rows == 1 ? "in the only row used" : "in all " + grouped(e.rows) + " rows used";
+}
+
+/// The name of the table column whose levels tell the columns of a side apart; empty if none does.
+std::string set_name(const Evidence& e, const Terms& side) {
+  if (side.size() < 2 || e.design.columns[side[0].first].levels.empty()) return "";
+  for (const design::LevelUse& use : e.design.columns[side[0].first].levels) {
+    const bool differ = std::all_of(side.begin() + 1, side.end(), [&](const auto& term) {
+      const auto& uses = e.design.columns[term.first].levels;
+      return std::any_of(uses.begin(), uses.end(), [&](const design::LevelUse& other) {
+        return other.set == use.set && other.level != use.level;
+      });
+    });
+    if (!differ) continue;
+    const int column = e.design.level_sets[static_cast<std::size_t>(use.set)].column;
+    return e.schema.columns[static_cast<std::size_t>(column)].name;
+  }
+  return "";
+}
+
+std::string of_level_set(const Evidence& e) {
+  const std::string name = set_name(e, e.sides.left);
+  if (e.sides.right.size() == 1) {
+    return "Each row used has one level of " + name +
+           ", so the products with all its levels add up to " + label(e, e.sides.right.front()) +
+           ".";
+  }
+  if (!e.sides.right.empty()) {
+    const std::string other = set_name(e, e.sides.right);
+    const std::string left = name.empty() ? listed(e, e.sides.left) : "the levels of " + name;
+    const std::string right = other.empty() ? listed(e, e.sides.right) : "the levels of " + other;
+    return "Each row used has exactly one of " + left + " and exactly one of " + right +
+           ": both sets add up to 1.";
+  }
+  if (!name.empty()) {
+    return "Each row used has exactly one level of " + name + ", so the " +
+           std::to_string(e.sides.left.size()) +
+           " columns made from its levels add up to the constant.";
+  }
+  return "Exactly one of " + listed(e, e.sides.left) +
+         " is 1 in each row used, so together they repeat the constant.";
+}
+
+std::string of_nested(const Evidence& e) {
+  const std::string name = set_name(e, e.sides.left);
+  const std::string parts = name.empty()
+                                ? listed(e, e.sides.left)
+                                : std::to_string(e.sides.left.size()) + " levels of " + name;
+  const bool one = e.sides.right.size() == 1;
+  return "The rows of " + parts + " together are exactly those of " + listed(e, e.sides.right) +
+         (one ? ": the finer levels lie inside it." : ": the finer levels lie inside them.");
+}
+
+std::string of_constant(const Evidence& e) {
+  return label(e, e.sides.left.front()) + " is " + number_text(e.sides.number) + " " +
+         in_every_row(e) + ": a column that never changes repeats the constant.";
+}
+
+/// "b is 0.3048 times a", "b is 1.8 times a plus 32". The factor is the one with fewer digits to
+/// write; at equal length the one above 1.
+std::string of_conversion(const Evidence& e) {
+  Terms::value_type from = e.sides.left[0];
+  Terms::value_type to = e.sides.right.empty() ? e.sides.left[1] : e.sides.right[0];
+  // from.second * from = sign * to.second * to + number
+  const int sign = e.sides.right.empty() ? -1 : 1;
+  mpq_class factor = sign * from.second / to.second;
+  mpq_class offset = -sign * e.sides.number / to.second;
+  const mpq_class back_factor = 1 / factor, back_offset = -offset / factor;
+  const auto length = [](const mpq_class& f, const mpq_class& o) {
+    return number_text(f).size() + number_text(o).size();
+  };
+  const std::size_t forth = length(factor, offset), back = length(back_factor, back_offset);
+  if (back < forth || (back == forth && abs(back_factor) > abs(factor))) {
+    std::swap(from, to);
+    factor = back_factor;
+    offset = back_offset;
+  }
+  std::string text = label(e, to) + " is ";
+  text += factor == 1    ? label(e, from)
+          : factor == -1 ? "minus " + label(e, from)
+                         : number_text(factor) + " times " + label(e, from);
+  if (offset > 0) text += " plus " + number_text(offset);
+  if (offset < 0) text += " minus " + number_text(abs(offset));
+  return text + " " + in_every_row(e);
+}
+
+std::string of_too_few(const Evidence& e) {
+  return "Only " + counted(e.rows, "row is", "rows are") + " used for " +
+         counted(e.design.columns.size(), "column", "columns") +
+         ": so few rows force relations whatever the columns mean.";
+}
+
+}  // namespace
+
+std::string sentence_of(const Evidence& e, Cause cause) {
+  const Sides& s = e.sides;
+  switch (cause) {
+    case Cause::zero_column:
+      return label(e, s.left[0]) + " is 0 " + in_every_row(e) + ".";
+    case Cause::empty_cell:
+      return "No row used has a value other than 0 in " + label(e, s.left[0]) +
+             ": its levels do not occur together.";
+    case Cause::constant_column:
+      return of_constant(e);
+    case Cause::duplicate:
+      return label(e, s.left[0]) + " and " + label(e, s.right[0]) + " are equal " +
+             in_every_row(e) + ": the same column twice.";
+    case Cause::multiple:
+      return of_conversion(e) + ": they say the same.";
+    case Cause::unit_conversion:
+      return of_conversion(e) + ": the same quantity on two scales.";
+    case Cause::level_set:
+      return of_level_set(e);
+    case Cause::nested_levels:
+      return of_nested(e);
+    case Cause::parts_and_total:
+      return label(e, s.right[0]) + " is the sum of " + listed(e, s.left) + " " + in_every_row(e) +
+             ": a total beside all its parts.";
+    case Cause::fixed_sum:
+      return listed(e, s.left) + " add up to " + number_text(s.number) + " " + in_every_row(e) +
+             ": any one of them follows from the others and the constant.";
+    case Cause::clock_identity:
+      return "Time is counted three ways in " + listed(e, s.left) + " and " + label(e, s.right[0]) +
+             ": any two of them give the third.";
+    case Cause::too_few_rows:
+      return of_too_few(e);
+    case Cause::other:
+      break;
+  }
+  return "These columns are tied by one equation " + in_every_row(e) + ".";
+}
+
+std::string word_of(Cause cause) {
+  constexpr std::array<const char*, 13> words = {
+      "zero_column",    "constant_column", "duplicate",  "multiple",        "unit_conversion",
+      "level_set",      "nested_levels",   "empty_cell", "parts_and_total", "fixed_sum",
+      "clock_identity", "too_few_rows",    "other"};
+  return words[static_cast<std::size_t>(cause)];
+}
+
+Relation describe(const design::Design& design, const table::Schema& schema,
+                  const NullVector& vector, const std::vector<ColumnSummary>& columns,
+                  std::uint64_t rows) {
+  const Evidence evidence{design, schema, columns, rows, sides_of(design, vector)};
+  Relation relation;
+  relation.coefficients = vector;
+  relation.text = equation(design, vector);
+  // The constant alone cannot be zero; a relation without columns has no story.
+  relation.cause = evidence.sides.columns() == 0 ? Cause::other : cause_of(evidence);
+  relation.cause_text = sentence_of(evidence, relation.cause);
+  for (std::size_t j = 0; j < design.columns.size(); ++j) {
+    if (vector[j] != 0) relation.removable.push_back(static_cast<int>(j));
+  }
+  return relation;
+}
+
+}  // namespace gramproof::exact

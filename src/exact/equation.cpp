@@ -1,0 +1,151 @@
+// src/exact/equation.cpp - relations in writing.
+#include <algorithm>
+#include <utility>
+
+#include "exact/relations.hpp"
+#include "exact/sides.hpp"
+
+namespace gramproof::exact {
+namespace {
+
+constexpr const char* minus = "\u2212";
+constexpr const char* times = "\u00b7";
+constexpr const char* dots = "\u2026";
+
+constexpr std::size_t long_relation = 12;
+constexpr std::size_t long_side = 8;
+constexpr std::size_t first_terms = 6;
+
+bool lone_column(const Sides::Terms& side) {
+  return side.size() == 1 && side.front().second == 1;
+}
+
+/// Columns of one sign with one common factor: a fixed sum, or a single column with its value. It
+/// reads better divided: a = 3.5, not 2 a = 7.
+void divide_by_common_factor(Sides& sides) {
+  if (!sides.right.empty() || sides.left.empty()) return;
+  const mpq_class factor = sides.left.front().second;
+  const bool common = std::all_of(sides.left.begin(), sides.left.end(),
+                                  [&](const auto& term) { return term.second == factor; });
+  mpz_class rest = mpq_class(sides.number / factor).get_den();
+  while (mpz_divisible_ui_p(rest.get_mpz_t(), 2) != 0) rest /= 2;
+  while (mpz_divisible_ui_p(rest.get_mpz_t(), 5) != 0) rest /= 5;
+  if (!common || (rest != 1 && sides.left.size() > 1)) return;
+  for (auto& term : sides.left) term.second = 1;
+  sides.number /= factor;
+}
+
+/// A label that is a sum needs parentheses in a sum; one that is a product, beside a factor.
+std::string label_text(const design::DesignColumn& column, bool beside_factor) {
+  if (!column.definition) return column.label;
+  using design::Operation;
+  const Operation operation = column.definition->operation;
+  const bool sum = operation == Operation::add || operation == Operation::subtract;
+  const bool product = operation == Operation::multiply || operation == Operation::divide;
+  return sum || (product && beside_factor) ? "(" + column.label + ")" : column.label;
+}
+
+std::string term_text(const design::Design& design, std::size_t column,
+                      const mpq_class& coefficient) {
+  const design::DesignColumn& named = design.columns[column];
+  if (coefficient == 1) return label_text(named, false);
+  return number_text(coefficient) + times + label_text(named, true);
+}
+
+/// The texts of one side's terms, cut if it is long.
+std::vector<std::string> terms_text(const design::Design& design, const Sides::Terms& side,
+                                    bool cut) {
+  std::vector<std::string> texts;
+  for (std::size_t i = 0; i < side.size(); ++i) {
+    if (cut && side.size() > long_side && i == first_terms) {
+      const std::size_t hidden = side.size() - first_terms - 1;
+      texts.push_back(std::string(dots) + " (" + std::to_string(hidden) + " more)");
+      i = side.size() - 1;
+    }
+    texts.push_back(term_text(design, side[i].first, side[i].second));
+  }
+  return texts;
+}
+
+std::string joined(const std::vector<std::string>& texts) {
+  std::string result;
+  for (const std::string& text : texts) result += (result.empty() ? "" : " + ") + text;
+  return result.empty() ? "0" : result;
+}
+
+/// The constant keeps its name beside brackets that a set has made: nobody wrote a 1 there.
+bool names_constant(const design::Design& design, const Sides& sides) {
+  return sides.number == 1 && sides.right.empty() &&
+         std::all_of(sides.left.begin(), sides.left.end(),
+                     [&](const auto& term) { return !design.columns[term.first].levels.empty(); });
+}
+
+std::string constant_label(const design::Design& design) {
+  for (const design::DesignColumn& column : design.columns) {
+    if (column.constant) return column.label;
+  }
+  return "1";
+}
+
+}  // namespace
+
+std::string number_text(const mpq_class& value) {
+  if (value < 0) return minus + number_text(-value);
+  mpz_class rest = value.get_den();
+  int twos = 0, fives = 0;
+  while (mpz_divisible_ui_p(rest.get_mpz_t(), 2) != 0) rest /= 2, ++twos;
+  while (mpz_divisible_ui_p(rest.get_mpz_t(), 5) != 0) rest /= 5, ++fives;
+  if (rest != 1) return value.get_str();
+  const auto decimals = static_cast<std::size_t>(std::max(twos, fives));
+  mpz_class power;
+  mpz_ui_pow_ui(power.get_mpz_t(), 10, decimals);
+  std::string digits = mpz_class(value.get_num() * power / value.get_den()).get_str();
+  if (decimals == 0) return digits;
+  if (digits.size() <= decimals) digits.insert(0, decimals + 1 - digits.size(), '0');
+  digits.insert(digits.size() - decimals, ".");
+  return digits;
+}
+
+Sides sides_of(const design::Design& design, const NullVector& vector) {
+  Sides sides;
+  for (std::size_t j = 0; j < vector.size(); ++j) {
+    if (vector[j] == 0) continue;
+    if (j == design.columns.size() || design.columns[j].constant) {
+      sides.number -= vector[j];
+      sides.has_constant = true;
+    } else {
+      auto& side = vector[j] > 0 ? sides.left : sides.right;
+      side.emplace_back(j, abs(vector[j]));
+    }
+  }
+  const bool swap =
+      sides.left.empty() || (!sides.right.empty() && !lone_column(sides.right) &&
+                             (lone_column(sides.left) || sides.left.size() < sides.right.size()));
+  if (swap) {
+    std::swap(sides.left, sides.right);
+    sides.number = -sides.number;
+  }
+  divide_by_common_factor(sides);
+  return sides;
+}
+
+std::string equation(const design::Design& design, const NullVector& vector) {
+  const Sides sides = sides_of(design, vector);
+  if (sides.columns() == 0) return constant_label(design) + " = 0";
+  const bool cut = sides.columns() > long_relation;
+  std::vector<std::string> left = terms_text(design, sides.left, cut);
+  std::vector<std::string> right = terms_text(design, sides.right, cut);
+  if (names_constant(design, sides)) {
+    right.push_back(constant_label(design));
+  } else if (sides.right.empty() && sides.number != 0) {
+    right.push_back(number_text(sides.number));
+  } else if (sides.number != 0) {
+    // Beside columns the number goes where it is positive.
+    (sides.number > 0 ? right : left).push_back(number_text(abs(sides.number)));
+  }
+  // a = b + 3 with its only sum to the right would read backwards.
+  if (left.size() == 1 && right.size() > 1) std::swap(left, right);
+  return joined(left) + " = " + joined(right);
+}
+
+}  // namespace gramproof::exact

@@ -1,0 +1,173 @@
+// src/exact/readable_basis.cpp
+#include <algorithm>
+#include <optional>
+#include <utility>
+
+#include "exact/flint_types.hpp"
+#include "exact/modular.hpp"
+#include "exact/null_space.hpp"
+#include "exact/relations.hpp"
+#include "exact/structural.hpp"
+
+namespace gramproof::exact {
+namespace {
+
+/// Beyond this many relations pairwise shortening is left out: it looks at every pair.
+constexpr std::size_t most_for_shortening = 64;
+
+/// How hard a relation is to read: each column counts 8, each further bit of its coefficient 1, so
+/// that a coefficient of three digits weighs as much as one more column.
+struct Cost {
+  std::size_t reading = 0, columns = 0;
+  Integer size = 0;
+  auto key() const { return std::tie(reading, columns, size); }
+  bool operator<(const Cost& other) const { return key() < other.key(); }
+};
+
+Cost cost_of(const NullVector& vector) {
+  Cost cost;
+  for (const Integer& v : vector) {
+    if (v == 0) continue;
+    ++cost.columns;
+    cost.reading += 7 + mpz_sizeinbase(v.get_mpz_t(), 2);
+    cost.size += abs(v);
+  }
+  return cost;
+}
+
+std::vector<std::size_t> support_of(const NullVector& vector) {
+  std::vector<std::size_t> support;
+  for (std::size_t j = 0; j < vector.size(); ++j) {
+    if (vector[j] != 0) support.push_back(j);
+  }
+  return support;
+}
+
+/// By cost, then by place in the design: a total order, so that the result never depends on the
+/// order in which vectors were found.
+void sort_by_cost(std::vector<NullVector>& vectors) {
+  struct Entry {
+    Cost cost;
+    std::vector<std::size_t> support;
+    NullVector vector;
+  };
+  std::vector<Entry> entries;
+  for (NullVector& vector : vectors) {
+    entries.push_back({cost_of(vector), support_of(vector), std::move(vector)});
+  }
+  std::sort(entries.begin(), entries.end(), [](const Entry& a, const Entry& b) {
+    if (a.cost.key() != b.cost.key()) return a.cost < b.cost;
+    if (a.support != b.support) return a.support < b.support;
+    return a.vector > b.vector;
+  });
+  vectors.clear();
+  for (Entry& entry : entries) vectors.push_back(std::move(entry.vector));
+}
+
+/// Independence of coordinates modulo the prime, one vector at a time.
+class Independence {
+ public:
+  explicit Independence(const Modulus& field) : field_(field) {}
+
+  /// True, and remembered, if the vector is independent of those accepted before.
+  bool accept(std::vector<std::uint64_t> vector) {
+    for (const auto& [pivot, row] : rows_) {
+      if (vector[pivot] != 0) eliminate(vector, row, vector[pivot]);
+    }
+    std::size_t pivot = 0;
+    while (pivot < vector.size() && vector[pivot] == 0) ++pivot;
+    if (pivot == vector.size()) return false;
+    const std::uint64_t inverse = field_.inverse(vector[pivot]);
+    for (std::uint64_t& v : vector) v = field_.multiply(v, inverse);
+    rows_.emplace_back(pivot, std::move(vector));
+    return true;
+  }
+
+ private:
+  void eliminate(std::vector<std::uint64_t>& vector, const std::vector<std::uint64_t>& row,
+                 std::uint64_t factor) const {
+    for (std::size_t i = 0; i < vector.size(); ++i) {
+      if (row[i] != 0) vector[i] = field_.subtract(vector[i], field_.multiply(factor, row[i]));
+    }
+  }
+  const Modulus& field_;
+  std::vector<std::pair<std::size_t, std::vector<std::uint64_t>>> rows_;
+};
+
+/// The cheapest basis that the pool holds: taking independent vectors in order of cost is optimal,
+/// linear independence being a matroid.
+std::vector<NullVector> cheapest_basis(const NullSpace& space, std::vector<NullVector> pool) {
+  const Modulus field(prime);
+  Independence independence(field);
+  sort_by_cost(pool);
+  std::vector<NullVector> basis;
+  for (NullVector& vector : pool) {
+    if (basis.size() == space.basis().size()) break;
+    if (independence.accept(space.coordinates(vector, field))) basis.push_back(std::move(vector));
+  }
+  // Only a prime that divides a coordinate could leave one out.
+  return basis.size() == space.basis().size() ? basis : space.basis();
+}
+
+/// The cheapest of v - t w where t makes a common column vanish, if it is cheaper than v.
+std::optional<NullVector> shortened(const NullVector& v, const NullVector& w) {
+  std::optional<NullVector> best;
+  Cost least = cost_of(v);
+  std::vector<mpq_class> tried;
+  for (std::size_t j = 0; j < v.size(); ++j) {
+    if (v[j] == 0 || w[j] == 0) continue;
+    mpq_class factor(v[j], w[j]);
+    factor.canonicalize();
+    if (std::find(tried.begin(), tried.end(), factor) != tried.end()) continue;
+    tried.push_back(factor);
+    NullVector next(v.size());
+    for (std::size_t i = 0; i < v.size(); ++i) {
+      next[i] = v[i] * factor.get_den() - w[i] * factor.get_num();
+    }
+    make_primitive(next);
+    const Cost cost = cost_of(next);
+    if (!(cost < least)) continue;
+    least = cost;
+    best = std::move(next);
+  }
+  return best;
+}
+
+/// Replaces vectors by cheaper combinations of two until none is cheaper. The span stays: the
+/// replaced vector has a factor that is not 0. Ends, for the costs fall.
+void shorten_pairwise(std::vector<NullVector>& basis) {
+  bool changed = basis.size() <= most_for_shortening;
+  while (changed) {
+    changed = false;
+    for (std::size_t a = 0; a < basis.size(); ++a) {
+      for (std::size_t b = 0; b < basis.size(); ++b) {
+        if (a == b) continue;
+        auto shorter = shortened(basis[a], basis[b]);
+        if (!shorter) continue;
+        basis[a] = std::move(*shorter);
+        changed = true;
+      }
+    }
+  }
+}
+
+}  // namespace
+
+std::vector<NullVector> readable_basis(const design::Design& design,
+                                       const table::Schema& /*schema*/,
+                                       const std::vector<NullVector>& null_vectors) {
+  if (null_vectors.empty()) return {};
+  const FlintSession session;
+  const NullSpace space(null_vectors);
+  std::vector<NullVector> pool = structural_relations(design, space);
+  pool.insert(pool.end(), space.basis().begin(), space.basis().end());
+  if (space.affordable()) {
+    for (NullVector& vector : space.reduced_lattice()) pool.push_back(std::move(vector));
+  }
+  std::vector<NullVector> basis = cheapest_basis(space, std::move(pool));
+  shorten_pairwise(basis);
+  sort_by_cost(basis);
+  return basis;
+}
+
+}  // namespace gramproof::exact
