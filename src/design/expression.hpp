@@ -52,6 +52,8 @@ struct Expression {
   int exponent = 1;
   Comparison comparison = Comparison::equal;
   table::Number number;
+  /// same_text: for each level of `column` the level of `other_column` with the same text, or -1.
+  std::shared_ptr<const std::vector<std::int32_t>> same_level;
 };
 
 /// Table columns the tree reads, ascending, each once. O(nodes).
