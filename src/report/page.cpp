@@ -147,14 +147,15 @@ void Page::item(std::string_view label, std::size_t label_width, std::string_vie
   }
 }
 
-void Page::cut(std::string_view text, std::size_t most, std::string_view tail, std::size_t indent) {
-  const std::vector<std::string> parts = wrapped(visible(text), width_ - indent);
-  if (parts.size() <= most) {
-    for (const std::string& part : parts) line(indent, part, Tone::plain);
-    return;
-  }
-  for (std::size_t i = 0; i + 1 < most; ++i) line(indent, parts[i], Tone::plain);
-  paragraph(tail, indent);
+void Page::cut(std::string_view text, std::size_t most, std::string_view tail, std::size_t indent,
+               std::size_t hanging) {
+  // The first line is wrapped like the others and starts further left, so that it stays shorter.
+  const std::vector<std::string> parts = wrapped(visible(text), width_ - indent - hanging);
+  const bool fits = parts.size() <= most;
+  const std::size_t told = fits ? parts.size() : most - 1;
+  for (std::size_t i = 0; i < told; ++i)
+    line(i == 0 ? indent : indent + hanging, parts[i], Tone::plain);
+  if (!fits) paragraph(tail, indent + hanging);
 }
 
 void Page::line(std::size_t indent, const std::string& content, Tone tone) {

@@ -28,8 +28,10 @@ class Page {
   /// stands `label_width` columns behind the indent.
   void item(std::string_view label, std::size_t label_width, std::string_view text,
             std::size_t indent = 0, Tone tone = Tone::plain);
-  /// A paragraph of at most `most` lines; if it is longer, `tail` stands in place of the rest.
-  void cut(std::string_view text, std::size_t most, std::string_view tail, std::size_t indent = 0);
+  /// A paragraph of at most `most` lines, all but the first `hanging` columns further in; if it is
+  /// longer, `tail` stands in place of the rest.
+  void cut(std::string_view text, std::size_t most, std::string_view tail, std::size_t indent = 0,
+           std::size_t hanging = 0);
 
   [[nodiscard]] const std::string& text() const { return text_; }
 

@@ -54,13 +54,13 @@ std::string coefficient_sentence(const audit::Audit& audit, const Inflation& inf
         name_of(audit, inflation.column));
   }
   std::string text = fmt::format(
-      "{} keeps {} of its own; standard error {} as large, {} for a residual standard deviation of "
-      "1.",
+      "{}: {} of it is its own; standard error {} as large, that is {} when the residuals have "
+      "standard deviation 1.",
       name_of(audit, inflation.column), share(inflation.own_share.value_or(1), known),
       times(factor_of(inflation), known), figure(inflation.standard_error_per_sigma, known));
   const std::size_t others = relatives(audit, inflation.column);
   if (others > 0 && factor_of(inflation) >= 2) {
-    text += fmt::format(" Part of that lies within its family, {}.",
+    text += fmt::format(" Part of that is due to its own family ({}).",
                         counted(others, "further column", "further columns"));
   }
   return text;
@@ -76,11 +76,25 @@ void write_items(const audit::Audit& audit, const std::vector<const Inflation*>&
 void write_rest(const audit::Audit& audit, const std::vector<const Inflation*>& order,
                 std::size_t told, Page& page) {
   if (order.size() <= told) return;
+  const double known = known_digits_of_squares(audit);
+  if (known < 1) return;
+  const std::size_t rest = order.size() - told;
   page.paragraph(
-      fmt::format("{}: standard errors at most {} as large.",
-                  counted(order.size() - told, "The other coefficient", "other coefficients"),
-                  times(factor_of(*order[told]), known_digits_of_squares(audit))),
+      fmt::format("{} standard error{} at most {} as large.",
+                  rest == 1 ? "The other coefficient has a"
+                            : fmt::format("The {} other coefficients have", grouped(rest)),
+                  rest == 1 ? "" : "s", times(factor_of(*order[told]), known)),
       2);
+}
+
+/// How many of the worst are told one by one: those that cost something, at least one.
+std::size_t worth_telling(const std::vector<const Inflation*>& order) {
+  std::size_t number = 1;
+  while (number < std::min(order.size(), most_coefficients_told) &&
+         factor_of(*order[number]) >= 1.5) {
+    ++number;
+  }
+  return number;
 }
 
 /// Families of several columns, judged as a whole (Fox & Monette 1992).
@@ -95,10 +109,11 @@ void write_families(const audit::Audit& audit, Page& page) {
   const double known = known_digits_of_squares(audit);
   page.blank();
   page.paragraph(
-      "Families of several columns are read as a whole. What the other families cost them, as the "
-      "average factor on a standard error over the family's dimensions (the root of the "
-      "generalised "
-      "variance inflation factor, Fox & Monette 1992):",
+      "A family of several columns is read as a whole. What the other families cost it, as the "
+      "factor on "
+      "a standard error, averaged over its columns (from the generalised variance inflation factor "
+      "of "
+      "Fox & Monette 1992):",
       2);
   const std::size_t told = std::min<std::size_t>(order.size(), 4);
   for (std::size_t i = 0; i < told; ++i) {
@@ -111,22 +126,22 @@ void write_families(const audit::Audit& audit, Page& page) {
               2);
   }
   if (order.size() == told) return;
-  page.paragraph(fmt::format("{}: at most {}.",
-                             counted(order.size() - told, "The other family", "other families"),
-                             figure(order[told].per_dimension, std::min(known, 3.0))),
-                 2);
+  page.paragraph(
+      fmt::format("{}: at most {}.", counted(order.size() - told, "other family", "other families"),
+                  figure(order[told].per_dimension, std::min(known, 3.0))),
+      2);
 }
 
 std::string share_sentence(const audit::Audit& audit) {
-  const char* basis =
-      audit.centred_by == audit::CentredBy::none
-          ? "of its sum of squares (the design has no constant, so nothing is centred)"
-          : "of its variation around the mean";
+  const char* basis = audit.centred_by == audit::CentredBy::none
+                          ? "its sum of squares (the design has no constant, so nothing is centred)"
+                          : "its variation around the mean";
   return fmt::format(
-      "Only the part of a column that the others do not reproduce tells its coefficient from "
-      "theirs: "
-      "its own share, as a part {}. The standard error is compared with that of a column that has "
-      "nothing in common with the others.",
+      "What the other columns do not reproduce of a column is its own share, counted in {}; only "
+      "that "
+      "part tells its coefficient from theirs. The standard error is compared with the one it "
+      "would "
+      "have if the column shared nothing.",
       basis);
 }
 
@@ -169,8 +184,9 @@ void write_coefficients(const audit::Audit& audit, Page& page) {
           2);
     }
   } else {
-    write_items(audit, order, most_coefficients_told, page);
-    write_rest(audit, order, most_coefficients_told, page);
+    const std::size_t told = worth_telling(order);
+    write_items(audit, order, told, page);
+    write_rest(audit, order, told, page);
   }
   write_families(audit, page);
 }

@@ -52,9 +52,27 @@ std::vector<int> sharing(const Matrix& proportions, const std::vector<Index>& ro
 std::vector<int> competing_columns(const audit::Audit& audit) {
   const audit::Conditioning& conditioning = audit.conditioning;
   std::vector<int> columns;
+  // Of a direction that is nothing but rounding nobody can say whose it is.
+  if (!(conditioning.known_digits >= 1)) return columns;
   for (const int place :
        sharing(conditioning.proportions, rows_from(conditioning.condition_indices, strong_index))) {
     columns.push_back(audit.kept.at(static_cast<std::size_t>(place)));
+  }
+  return columns;
+}
+
+/// Kept columns with half the variance of their coefficient in the one direction of this index.
+std::vector<int> sharing_the_index(const audit::Audit& audit, double index) {
+  const Vector& indices = audit.conditioning.condition_indices;
+  std::vector<int> columns;
+  if (!(known_digits_of_index(audit, index) >= 1)) return columns;
+  for (Index i = 0; i < indices.size(); ++i) {
+    // The index of a near relation is a copy of one of these.
+    if (indices[i] != index) continue;
+    for (const int place : sharing(audit.conditioning.proportions, {i})) {
+      columns.push_back(audit.kept.at(static_cast<std::size_t>(place)));
+    }
+    return columns;
   }
   return columns;
 }
@@ -64,15 +82,20 @@ void write_near_relations(const audit::Audit& audit, Page& page) {
   for (const RelationFinding& relation : audit.relations) {
     if (relation.standing == Standing::near) relations.push_back(&relation);
   }
-  const std::size_t told = std::min<std::size_t>(relations.size(), 5);
+  const std::size_t told = std::min<std::size_t>(relations.size(), 3);
   for (std::size_t i = 0; i < told; ++i) {
     const RelationFinding& relation = *relations[i];
     page.blank();
-    page.cut(fmt::format("{}. {}", i + 1, relation.text), most_lines_of_an_equation,
-             fmt::format("... ({} in all)", counted(relation.terms.size(), "column", "columns")),
-             2);
+    page.cut(fmt::format("{}. {}", i + 1, relation.text), 4,
+             fmt::format("... ({} in all)", counted(relation.terms.size(), "column", "columns")), 2,
+             3);
     std::string text =
         fmt::format("Condition index {}.", index_text(audit, relation.condition_index));
+    const std::vector<int> columns = sharing_the_index(audit, relation.condition_index);
+    if (!columns.empty()) {
+      text += fmt::format(" At least half the variance of the coefficient{} of {} comes from it.",
+                          columns.size() == 1 ? "" : "s", names_of(audit, columns));
+    }
     if (!relation.cause_text.empty()) text += " " + relation.cause_text;
     page.paragraph(text, 5);
   }
@@ -113,28 +136,24 @@ std::string indices_sentence(const audit::Audit& audit) {
 void write_uncentred_figures(const audit::Audit& audit, Page& page) {
   page.paragraph(
       fmt::format(
-          "Condition number: {}. It compares the longest and the shortest combination of the "
-          "kept columns, each scaled to length one; a condition index does so for one "
-          "direction at a time. {}",
+          "Condition number: {}. It is the longest combination of the kept columns, each scaled "
+          "to length one, over the shortest; a condition index is the same for one direction. "
+          "From 30 on a relation counts as strong (Belsley, Kuh & Welsch 1980, ch. 3). {}",
           index_text(audit, audit.conditioning.condition_number), indices_sentence(audit)),
       2);
   const std::vector<int> columns = competing_columns(audit);
   if (!columns.empty()) {
     page.paragraph(
-        fmt::format(
-            "Directions with an index of 30 or more account for at least half the variance of "
-            "the coefficient{} of {}.",
-            columns.size() == 1 ? "" : "s", names_of(audit, columns)),
+        fmt::format("The directions with an index of 30 or more together bring at least half the "
+                    "variance of the coefficient{} of {}.",
+                    columns.size() == 1 ? "" : "s", names_of(audit, columns)),
         2);
   }
   page.paragraph(
-      "These figures follow Belsley, Kuh & Welsch (1980): the columns are not centred, the "
-      "constant "
-      "is one of them. Centring would make most of them smaller, and Belsley (1984) objected that "
-      "it "
-      "only hides relations with the constant. The figure between families below sets the "
-      "constant aside where it can, because what a column shares with the constant alone costs "
-      "nothing about its slope; both views are shown so that the reader can judge.",
+      "As in their book, nothing is centred here, and the constant counts as a column. Subtracting "
+      "means first would make most of these figures smaller; Belsley (1984) objected that this "
+      "only "
+      "hides relations with the constant.",
       2);
 }
 
@@ -153,8 +172,12 @@ void write_between_families(const audit::Audit& audit, Page& page) {
   const Index last = between.indices.size() - 1;
   const double largest = between.indices[last];
   std::string text = fmt::format(
-      "Between families (columns made from the same source are one family and are read together), "
-      "the largest index is {}.",
+      "The `informative` ground asks another question. Columns made from the same source are one "
+      "family "
+      "and are read together, and what a column shares with the constant alone costs its slope "
+      "nothing. "
+      "Between families{} the largest index is {}.",
+      audit.centred_by == audit::CentredBy::none ? "" : ", the constant set aside,",
       index_text(audit, largest));
   if (largest >= weak_index) {
     const auto names = family_names(audit, sharing(between.proportions, {last}));
@@ -184,48 +207,58 @@ void write_competing(const audit::Audit& audit, Page& page) {
   write_between_families(audit, page);
 }
 
+namespace {
+
+std::string whole_digits(double digits) {
+  const auto number = static_cast<std::uint64_t>(std::clamp(std::floor(digits), 0.0, 16.0));
+  return number == 0 ? "no digit" : "about " + counted(number, "digit", "digits");
+}
+
+/// The determinant is a product of k sizes, so k relative errors add up: told while together they
+/// leave a digit.
+void write_determinants(const audit::Audit& audit, Page& page) {
+  const audit::Conditioning& conditioning = audit.conditioning;
+  const double known =
+      conditioning.known_digits - std::log10(static_cast<double>(audit.kept.size()));
+  if (!(known >= 1) || !std::isfinite(conditioning.log10_determinant)) return;
+  std::string text =
+      fmt::format("The determinant of X'X is {}", power_of_ten(conditioning.log10_determinant));
+  const std::optional<double>& correlation = conditioning.log10_determinant_correlation;
+  if (correlation && std::isfinite(*correlation)) {
+    text += fmt::format(", that of the correlation matrix {}",
+                        *correlation > -5 ? figure(std::pow(10, *correlation), std::min(known, 2.0))
+                                          : power_of_ten(*correlation));
+  }
+  page.paragraph(text +
+                     ". Determinants change with the number of columns and with units: no verdict "
+                     "rests on them.",
+                 2);
+}
+
+}  // namespace
+
 void write_digits(const audit::Audit& audit, Page& page) {
   const audit::Conditioning& conditioning = audit.conditioning;
   if (conditioning.condition_indices.size() == 0) return;
-  const auto whole = [](double digits) {
-    const auto number = static_cast<std::uint64_t>(std::clamp(std::floor(digits), 0.0, 16.0));
-    return number == 0 ? std::string("no digit") : counted(number, "digit", "digits");
-  };
   const audit::Digits& digits = conditioning.digits;
   page.heading("What arithmetic leaves of the figures");
   page.paragraph(
       fmt::format(
-          "In double precision, a program that solves the normal equations (inverts X'X) keeps "
-          "about {}, one that works on X itself by orthogonal rotations (QR) about {}. In "
-          "single precision: {} and {}. The grade above is for {}.",
-          whole(digits.normal_equations), whole(digits.qr), whole(digits.normal_equations_single),
-          whole(digits.qr_single),
+          "In double precision a program that inverts X'X (the normal equations) keeps {}; one "
+          "that works on X itself by orthogonal rotations (QR) keeps {}. In single precision "
+          "they keep {} and {}. The grade above is for {}.",
+          whole_digits(digits.normal_equations), whole_digits(digits.qr),
+          whole_digits(digits.normal_equations_single), whole_digits(digits.qr_single),
           audit.solver == audit::Solver::qr ? "QR" : "the normal equations"),
       2);
   page.paragraph(
       fmt::format(
-          "In the units of the data the condition number is {}: choosing other units changes "
-          "this one, but not the one above.",
+          "Condition number in the units of the data: {}. Other units change this one, not the "
+          "one above.",
           size_or_bound(conditioning.raw_condition_number, conditioning.known_digits_raw,
                         largest_known_condition(audit))),
       2);
-  // The determinant is a product of k sizes: the exponent is told only where k relative errors
-  // together stay below a quarter of a power of ten.
-  const double error =
-      static_cast<double>(audit.kept.size()) * std::pow(10, -conditioning.known_digits);
-  if (!(error < 0.25) || !std::isfinite(conditioning.log10_determinant)) return;
-  std::string text =
-      fmt::format("The determinant of X'X is {}", power_of_ten(conditioning.log10_determinant));
-  if (conditioning.log10_determinant_correlation &&
-      std::isfinite(*conditioning.log10_determinant_correlation)) {
-    text += fmt::format(", that of the correlations of the columns {}",
-                        std::abs(*conditioning.log10_determinant_correlation) < 0.5
-                            ? "close to 1"
-                            : power_of_ten(*conditioning.log10_determinant_correlation));
-  }
-  page.paragraph(
-      text + "; a determinant depends on units and on the number of columns and decides nothing.",
-      2);
+  write_determinants(audit, page);
 }
 
 }  // namespace gramproof::report

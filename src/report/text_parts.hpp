@@ -15,11 +15,11 @@ namespace gramproof::report {
 // How much of a wide design is told before the rest is counted.
 inline constexpr std::size_t most_names = 8;
 inline constexpr std::size_t most_lines_of_an_equation = 6;
-inline constexpr std::size_t most_relations_told = 10;
+inline constexpr std::size_t most_relations_told = 6;
 inline constexpr std::size_t most_rows_told = 10;
 inline constexpr std::size_t most_coefficients_told = 6;
 inline constexpr std::size_t most_focus_told = 12;
-inline constexpr std::size_t most_notes_told = 12;
+inline constexpr std::size_t most_notes_told = 6;
 
 /// The label of a design column in backticks.
 [[nodiscard]] std::string name_of(const audit::Audit& audit, int column);

@@ -22,7 +22,8 @@ std::vector<const RelationFinding*> standing_at(const audit::Audit& audit, Stand
 void write_equation(const RelationFinding& relation, std::size_t number, Page& page) {
   page.blank();
   page.cut(fmt::format("{}. {}", number, relation.text), most_lines_of_an_equation,
-           fmt::format("... ({} in all)", counted(relation.terms.size(), "column", "columns")), 2);
+           fmt::format("... ({} in all)", counted(relation.terms.size(), "column", "columns")), 2,
+           3);
 }
 
 /// The text with a full stop, whether or not it has one.
@@ -31,12 +32,17 @@ std::string sentence(std::string text) {
   return text;
 }
 
+/// "`a`", "`a` or `b`": any one of them.
+std::string alternatives(const audit::Audit& audit, const std::vector<int>& columns) {
+  const std::string text = names_of(audit, columns);
+  if (columns.size() < 2 || columns.size() > most_names + 1) return text;
+  const std::size_t last = text.rfind(" and ");
+  return text.substr(0, last) + " or " + text.substr(last + 5);
+}
+
 std::string removable_sentence(const audit::Audit& audit, const RelationFinding& relation) {
   if (relation.removable.empty()) return "";
-  if (relation.removable.size() == 1) {
-    return fmt::format("To end it, leave out {}.", names_of(audit, relation.removable));
-  }
-  return fmt::format("To end it, leave out any one of {}.", names_of(audit, relation.removable));
+  return fmt::format("To end it, leave out {}.", alternatives(audit, relation.removable));
 }
 
 std::string lines_of(const audit::Violation& violation) {
@@ -85,18 +91,21 @@ void write_exact_relations(const audit::Audit& audit, Page& page) {
   for (std::size_t i = 0; i < told; ++i) {
     const RelationFinding& relation = *relations[i];
     write_equation(relation, i + 1, page);
-    page.paragraph(
-        fmt::format("Holds in every one of {}. {}", counted(relation.rows_holding, "row", "rows"),
-                    sentence(relation.cause_text)),
-        5);
+    page.paragraph(fmt::format("Holds on all {}. {}", counted(relation.rows_holding, "row", "rows"),
+                               sentence(relation.cause_text)),
+                   5);
     page.paragraph(removable_sentence(audit, relation), 5);
   }
-  const std::uint64_t rest = relations.size() - told + audit.relations_omitted;
+  const std::uint64_t listed_only = relations.size() - told;
+  const std::uint64_t rest = listed_only + audit.relations_omitted;
   if (rest == 0) return;
+  std::string text = counted_are(rest, "further relation", "further relations") + " not shown here";
+  if (listed_only > 0) {
+    text += fmt::format("; the JSON document lists {}",
+                        audit.relations_omitted == 0 ? "all" : grouped(listed_only) + " of them");
+  }
   page.blank();
-  page.paragraph(
-      fmt::format("{} not shown here.", counted_are(rest, "further relation", "further relations")),
-      2);
+  page.paragraph(text + ".", 2);
 }
 
 void write_left_out(const audit::Audit& audit, Page& page) {
@@ -116,10 +125,10 @@ void write_left_out(const audit::Audit& audit, Page& page) {
   if (!changed.empty()) {
     page.paragraph(
         fmt::format(
-            "The choice changes what {} can be read as: {} stands in for the column left out "
-            "as well, so that {} measured against it.",
-            changed.size() == 1 ? "one coefficient" : "these coefficients",
-            names_of(audit, changed), changed.size() == 1 ? "it is" : "they are"),
+            "The choice does decide how {} read, which also carr{} what the columns left out would "
+            "have told: {}.",
+            changed.size() == 1 ? "one coefficient is" : "these coefficients are",
+            changed.size() == 1 ? "ies" : "y", names_of(audit, changed)),
         2);
   }
   std::size_t untouched = 0;
@@ -128,9 +137,10 @@ void write_left_out(const audit::Audit& audit, Page& page) {
   }
   if (untouched > 0) {
     page.paragraph(
-        fmt::format("{} in no exact relation and keep{} the same coefficient in every case.",
-                    counted_are(untouched, "kept column", "kept columns"),
-                    untouched == 1 ? "s" : ""),
+        fmt::format(
+            "{} in no exact relation: the coefficient{} the same whichever column is left out.",
+            counted_are(untouched, "other column", "other columns"),
+            untouched == 1 ? " is" : "s are"),
         2);
   }
 }
@@ -148,12 +158,17 @@ void write_relations_with_exceptions(const audit::Audit& audit, Page& page) {
   for (std::size_t i = 0; i < told; ++i) {
     const RelationFinding& relation = *relations[i];
     write_equation(relation, i + 1, page);
-    page.paragraph(fmt::format("Holds in {}, is violated in {}. {}",
+    page.paragraph(fmt::format("Holds on {}, is violated on {}. {}",
                                counted(relation.rows_holding, "row", "rows"),
                                grouped(relation.rows_violating), sentence(relation.cause_text)),
                    5);
     write_violations(relation, page);
-    page.paragraph(removable_sentence(audit, relation), 5);
+    if (!relation.removable.empty()) {
+      page.paragraph(fmt::format("If these rows are errors, the relation is exact once they are "
+                                 "corrected, and one column has to go: {}.",
+                                 alternatives(audit, relation.removable)),
+                     5);
+    }
   }
   if (relations.size() == told) return;
   page.blank();

@@ -14,12 +14,14 @@ namespace {
 using design::Exclusion;
 
 std::string table_name(const audit::Audit& audit, int column) {
-  if (column < 0 || static_cast<std::size_t>(column) >= audit.schema.columns.size()) return "";
+  if (column < 0 || static_cast<std::size_t>(column) >= audit.schema.columns.size())
+    return "a column";
   return "`" + audit.schema.columns[static_cast<std::size_t>(column)].name + "`";
 }
 
 std::string design_name(const audit::Audit& audit, int column) {
-  if (column < 0 || static_cast<std::size_t>(column) >= audit.design.columns.size()) return "";
+  if (column < 0 || static_cast<std::size_t>(column) >= audit.design.columns.size())
+    return "a column";
   return name_of(audit, column);
 }
 
@@ -52,7 +54,7 @@ void write_ratio(const audit::Audit& audit, const Vector& ratios, const std::vec
       fmt::format("{} a singular X is {} as far away as rounding alone moves the columns", reading,
                   times(ratio, known_digits_of_squares(audit)));
   if (!direction.empty())
-    text += fmt::format("; the direction is that of {}", names_of(audit, direction));
+    text += fmt::format("; the nearest one is reached through {}", names_of(audit, direction));
   page.paragraph(text + ".", 2);
 }
 
@@ -140,7 +142,7 @@ void write_rows(const audit::Audit& audit, Page& page) {
               2);
   }
   if (order.size() > 1) {
-    page.paragraph("A row that lacks several columns is counted under each of them.", 2);
+    page.paragraph("A row that fails for several reasons is counted under each of them.", 2);
   }
 }
 

@@ -37,22 +37,24 @@ std::string rank_sentence(const audit::Audit& audit) {
                                        counted(audit.rows_used, "row", "rows"),
                                        counted(rank.columns, "column", "columns"));
   const char* how =
-      rank.proved ? "counted exactly from the decimals in the file, not judged by a tolerance"
-                  : "of which columns with log, sqrt, exp or asinh are counted as independent "
-                    "without a proof";
+      rank.proved
+          ? ", counted exactly from the decimals in the file, not judged by a tolerance."
+          : ". Columns with log, sqrt, exp or asinh are counted as independent of the others; "
+            "that is not proved.";
   if (rank.nullity == 0) {
-    return fmt::format("{} No column is a combination of others: the rank is {}, {}.", size,
-                       grouped(rank.rank), how);
+    return fmt::format("{} No column is {}a combination of others: the rank is {}{}", size,
+                       rank.proved ? "" : "known to be ", grouped(rank.rank), how);
   }
-  return fmt::format("{} Only {} of the columns are independent: the rank is {}, {}.", size,
+  return fmt::format("{} Only {} of the columns are independent: the rank is {}{}", size,
                      grouped(rank.rank), grouped(rank.rank), how);
 }
 
+/// Where the data come from and how much of them is used.
 std::string data_sentence(const audit::Audit& audit) {
   std::vector<std::string> names;
   for (const auto& file : audit.source.files) names.push_back(file.first);
   std::string text =
-      fmt::format("{}: {}", listed(names, 3), counted(audit.rows_read, "row", "rows"));
+      fmt::format("{}, {}", listed(names, 3), counted(audit.rows_read, "row", "rows"));
   if (audit.rows_read == audit.rows_used) {
     text += audit.rows_read == 1 ? ", used." : ", all used.";
   } else {
