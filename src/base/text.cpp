@@ -2,6 +2,7 @@
 
 #include <algorithm>
 #include <array>
+#include <cstring>
 
 #include <fmt/format.h>
 
@@ -139,6 +140,15 @@ std::string visible(std::string_view text) {
 
 std::optional<std::size_t> first_invalid_utf8(std::string_view bytes) {
   for (std::size_t at = 0; at < bytes.size();) {
+    // Most text is mostly ASCII: eight such bytes are passed in one step.
+    std::uint64_t word = 0;
+    if (bytes.size() - at >= sizeof word) {
+      std::memcpy(&word, bytes.data() + at, sizeof word);
+      if ((word & 0x8080808080808080u) == 0) {
+        at += sizeof word;
+        continue;
+      }
+    }
     const CodePoint point = decode(bytes, at);
     if (point.length == 0) return at;
     at += point.length;

@@ -123,6 +123,11 @@ std::size_t first_bad_byte(std::string_view bytes) {
 Error bad_byte_error(const std::string& file, std::string_view bytes, std::size_t offset,
                      std::uint64_t first_line) {
   const std::string where = place(file, line_column(bytes, bytes.data() + offset, first_line));
+  const bool marked_utf16 = bytes.starts_with("\xFF\xFE") || bytes.starts_with("\xFE\xFF");
+  if (offset == 0 && first_line == 1 && marked_utf16) {
+    return {ErrorKind::data, where, "the file is in UTF-16",
+            "convert it with `iconv -f utf-16 -t utf-8`"};
+  }
   if (bytes[offset] == '\0') {
     return {ErrorKind::data, where, "a NUL byte: this is no text file, or not in UTF-8",
             "convert UTF-16 with `iconv -f utf-16 -t utf-8`"};
