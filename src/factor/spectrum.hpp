@@ -8,22 +8,25 @@
 namespace gramproof::factor {
 
 struct Spectrum {
-  Vector values;        ///< descending
-  Matrix right;         ///< k x values.size(): right singular vectors, columns in the order of `values`
-  bool complete = true; ///< false: only the extreme values were computed (see extremes_beyond)
+  Vector values;  ///< descending
+  Matrix right;   ///< k x values.size(): right singular vectors, columns in the order of `values`
+  bool complete = true;  ///< false: only the extreme values were computed (see extremes_beyond)
 };
 
-/// Above this many columns only the extreme singular triplets are computed. Set by measurement (tests/bench).
+/// Above this many columns only the extreme singular triplets are computed. Set by measurement
+/// (tests/bench).
 inline constexpr Index extremes_beyond = 1200;
 /// How many smallest triplets are computed then (the largest one besides).
 inline constexpr Index smallest_computed = 30;
 
-/// Full decomposition by one-sided Jacobi rotations or by divide and conquer according to size: the error of each value is at most a
-/// modest multiple of k u sigma_1 (Weyl), relative to the column-scaled matrix. r: k x k upper triangular, finite.
+/// Full decomposition by one-sided Jacobi rotations or by divide and conquer according to size: the
+/// error of each value is at most a modest multiple of k u sigma_1 (Weyl), relative to the
+/// column-scaled matrix. r: k x k upper triangular, finite.
 [[nodiscard]] Spectrum decompose(const Matrix& r);
 
-/// sigma_1 and the `smallest` smallest singular triplets of a non-singular upper triangular r by Lanczos (Spectra) on triangular
-/// solves with r and r' (never on r'r as a matrix), start vector fixed. Falls back to decompose() when not converged.
+/// sigma_1 and the `smallest` smallest singular triplets of a non-singular upper triangular r by
+/// Lanczos (Spectra) on triangular solves with r and r' (never on r'r as a matrix), start vector
+/// fixed. Falls back to decompose() when not converged.
 [[nodiscard]] Spectrum extremes(const Matrix& r, Index smallest);
 
 /// decompose() or extremes() by size.
@@ -35,7 +38,8 @@ inline constexpr Index smallest_computed = 30;
 /// Inverse of a non-singular upper triangular matrix by back substitution. O(k^3/3).
 [[nodiscard]] Matrix triangular_inverse(const Matrix& r);
 
-/// Column-pivoted QR (Businger & Golub 1965): the columns in the order of what each adds to those before it.
+/// Column-pivoted QR (Businger & Golub 1965): the columns in the order of what each adds to those
+/// before it.
 [[nodiscard]] std::vector<int> pivot_order(const Matrix& r);
 
 }  // namespace gramproof::factor
