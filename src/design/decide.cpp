@@ -33,7 +33,8 @@ Bounded sum(const Bounded& a, double sign, const Bounded& b) {
 }
 
 Bounded product(const Bounded& a, const Bounded& b) {
-  // Brackets times brackets, say: products of exact zeros and ones stay exact.
+  // Zero times an undefined value is undefined, not zero.
+  if (std::isinf(a.error) || std::isinf(b.error)) return {0, unknown_error};
   const bool zero = (a.value == 0 && a.error == 0) || (b.value == 0 && b.error == 0);
   if (zero) return {0, 0};
   const double value = a.value * b.value;
@@ -54,6 +55,7 @@ Bounded quotient(const Bounded& a, const Bounded& b) {
 }
 
 Bounded power(Bounded base, int exponent) {
+  if (std::isinf(base.error)) return base;
   Bounded result{1, 0};
   for (int left = std::abs(exponent); left > 0; left /= 2) {
     if (left % 2 == 1) result = product(result, base);

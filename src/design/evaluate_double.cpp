@@ -18,6 +18,7 @@ double kept_from_zero(double value, bool is_zero, bool negative) {
 }
 
 double whole_power(double base, int exponent) {
+  if (base != base) return undefined;
   if (exponent == 0) return 1;
   if (base == 0) return exponent < 0 ? undefined : 0;
   double value = 0;
