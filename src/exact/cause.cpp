@@ -135,7 +135,7 @@ bool is_clock(const Evidence& e) {
 std::optional<Cause> cause_of_one(const Evidence& e) {
   const Sides& s = e.sides;
   if (s.columns() != 1) return std::nullopt;
-  if (s.number != 0) return Cause::constant_column;
+  if (s.number != 0) return e.rows == 1 ? Cause::too_few_rows : Cause::constant_column;
   const design::DesignColumn& column = column_of(e, s.left.front());
   const bool crossed =
       column.levels.size() >= 2 || (!column.levels.empty() && column.sources.size() >= 2);
@@ -163,22 +163,15 @@ bool is_total(const Evidence& e) {
          });
 }
 
-std::uint64_t exact_columns(const design::Design& design) {
-  return static_cast<std::uint64_t>(
-      std::count_if(design.columns.begin(), design.columns.end(),
-                    [](const design::DesignColumn& c) { return c.exact; }));
-}
-
 }  // namespace
 
 Cause cause_of(const Evidence& e) {
   if (const auto cause = cause_of_one(e)) return *cause;
   if (is_level_set(e)) return Cause::level_set;
   if (is_nested(e)) return Cause::nested_levels;
+  // Any m columns are dependent on fewer than m rows, whatever they mean: no story is told then.
+  if (e.rows < e.sides.columns() + (e.sides.has_constant ? 1 : 0)) return Cause::too_few_rows;
   if (const auto cause = cause_of_two(e)) return *cause;
-  // With fewer rows than columns some relation holds whatever the columns mean: no story is told
-  // about one that the rows force.
-  if (e.rows < exact_columns(e.design)) return Cause::too_few_rows;
   if (is_clock(e)) return Cause::clock_identity;
   if (is_total(e)) return Cause::parts_and_total;
   const bool one_side = e.sides.right.empty() && e.sides.number != 0;

@@ -117,9 +117,22 @@ std::string of_conversion(const Evidence& e) {
 }
 
 std::string of_too_few(const Evidence& e) {
-  return "Only " + counted(e.rows, "row is", "rows are") + " used for " +
-         counted(e.design.columns.size(), "column", "columns") +
-         ": so few rows force relations whatever the columns mean.";
+  const std::size_t tied = e.sides.columns() + (e.sides.has_constant ? 1 : 0);
+  return "Only " + counted(e.rows, "row is", "rows are") + " used: any " + std::to_string(tied) +
+         " columns are then tied by an equation, whatever they mean.";
+}
+
+std::string of_clock(const Evidence& e) {
+  Terms all = e.sides.left;
+  all.insert(all.end(), e.sides.right.begin(), e.sides.right.end());
+  return "Time is counted three ways, in " + listed(e, all) + ": any two of them give the third.";
+}
+
+std::string of_other(const Evidence& e) {
+  const bool lone = e.sides.right.size() == 1 && e.sides.right.front().second == 1;
+  const std::string which = lone ? label(e, e.sides.right.front()) + " follows from the others"
+                                 : "Any one of these columns follows from the others";
+  return which + " by this equation " + in_every_row(e) + ".";
 }
 
 }  // namespace
@@ -152,14 +165,13 @@ std::string sentence_of(const Evidence& e, Cause cause) {
       return listed(e, s.left) + " add up to " + number_text(s.number) + " " + in_every_row(e) +
              ": any one of them follows from the others and the constant.";
     case Cause::clock_identity:
-      return "Time is counted three ways in " + listed(e, s.left) + " and " + label(e, s.right[0]) +
-             ": any two of them give the third.";
+      return of_clock(e);
     case Cause::too_few_rows:
       return of_too_few(e);
     case Cause::other:
       break;
   }
-  return "These columns are tied by one equation " + in_every_row(e) + ".";
+  return of_other(e);
 }
 
 std::string word_of(Cause cause) {

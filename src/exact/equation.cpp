@@ -20,19 +20,45 @@ bool lone_column(const Sides::Terms& side) {
   return side.size() == 1 && side.front().second == 1;
 }
 
-/// Columns of one sign with one common factor: a fixed sum, or a single column with its value. It
-/// reads better divided: a = 3.5, not 2 a = 7.
+/// Decimals beyond these are no figure that anybody chose: the integers read better then.
+constexpr int most_decimals = 6;
+
+/// Decimals of a value that has finitely many, else -1.
+int decimals_of(const mpq_class& value) {
+  mpz_class rest = value.get_den();
+  int twos = 0, fives = 0;
+  while (mpz_divisible_ui_p(rest.get_mpz_t(), 2) != 0) rest /= 2, ++twos;
+  while (mpz_divisible_ui_p(rest.get_mpz_t(), 5) != 0) rest /= 5, ++fives;
+  return rest == 1 ? std::max(twos, fives) : -1;
+}
+
+/// Divides by what the coefficients of the columns share, where the number stays a short decimal:
+/// a + b = 0.5 and not 2 a + 2 b = 1. A single column is always told by its value.
 void divide_by_common_factor(Sides& sides) {
-  if (!sides.right.empty() || sides.left.empty()) return;
-  const mpq_class factor = sides.left.front().second;
-  const bool common = std::all_of(sides.left.begin(), sides.left.end(),
-                                  [&](const auto& term) { return term.second == factor; });
-  mpz_class rest = mpq_class(sides.number / factor).get_den();
-  while (mpz_divisible_ui_p(rest.get_mpz_t(), 2) != 0) rest /= 2;
-  while (mpz_divisible_ui_p(rest.get_mpz_t(), 5) != 0) rest /= 5;
-  if (!common || (rest != 1 && sides.left.size() > 1)) return;
-  for (auto& term : sides.left) term.second = 1;
-  sides.number /= factor;
+  mpz_class factor = 0;
+  for (const Sides::Terms* side : {&sides.left, &sides.right}) {
+    for (const auto& term : *side) factor = gcd(factor, term.second.get_num());
+  }
+  if (factor <= 1) return;
+  const mpq_class number = sides.number / factor;
+  const int decimals = decimals_of(number);
+  if (sides.columns() > 1 && (decimals < 0 || decimals > most_decimals)) return;
+  for (Sides::Terms* side : {&sides.left, &sides.right}) {
+    for (auto& term : *side) term.second /= factor;
+  }
+  sides.number = number;
+}
+
+/// 4000000000 is 4·10^9: nobody counts that many zeros.
+std::string whole_text(const mpz_class& value) {
+  constexpr std::size_t readable_zeros = 6;
+  std::string digits = value.get_str();
+  const std::size_t last = digits.find_last_not_of('0');
+  const std::size_t zeros = last == std::string::npos ? 0 : digits.size() - last - 1;
+  if (zeros <= readable_zeros) return digits;
+  const std::string power = "10^" + std::to_string(zeros);
+  digits.resize(last + 1);
+  return digits == "1" ? power : digits + times + power;
 }
 
 /// A label that is a sum needs parentheses in a sum; one that is a product, beside a factor.
@@ -91,16 +117,13 @@ std::string constant_label(const design::Design& design) {
 
 std::string number_text(const mpq_class& value) {
   if (value < 0) return minus + number_text(-value);
-  mpz_class rest = value.get_den();
-  int twos = 0, fives = 0;
-  while (mpz_divisible_ui_p(rest.get_mpz_t(), 2) != 0) rest /= 2, ++twos;
-  while (mpz_divisible_ui_p(rest.get_mpz_t(), 5) != 0) rest /= 5, ++fives;
-  if (rest != 1) return value.get_str();
-  const auto decimals = static_cast<std::size_t>(std::max(twos, fives));
+  const int places = decimals_of(value);
+  if (places < 0) return value.get_str();
+  if (places == 0) return whole_text(value.get_num());
+  const auto decimals = static_cast<std::size_t>(places);
   mpz_class power;
   mpz_ui_pow_ui(power.get_mpz_t(), 10, decimals);
   std::string digits = mpz_class(value.get_num() * power / value.get_den()).get_str();
-  if (decimals == 0) return digits;
   if (digits.size() <= decimals) digits.insert(0, decimals + 1 - digits.size(), '0');
   digits.insert(digits.size() - decimals, ".");
   return digits;
