@@ -1,4 +1,5 @@
-// src/audit/audit.hpp - every finding about a design, as plain data. Filled by the other files of this folder, read by src/report.
+// src/audit/audit.hpp - every finding about a design, as plain data. Filled by the other files of
+// this folder, read by src/report.
 #pragma once
 
 #include <cstdint>
@@ -17,7 +18,8 @@
 
 namespace gramproof::audit {
 
-// --- verdict ---------------------------------------------------------------------------------------------------------
+// --- verdict
+// ---------------------------------------------------------------------------------------------------------
 
 enum class Grade : std::uint8_t { pass, caution, fail };
 enum class Overall : std::uint8_t { singular, unreliable, fragile, guarded, sound };  // worst first
@@ -45,7 +47,8 @@ struct Verdict {
   std::vector<int> coefficients_lost;              ///< design columns
 };
 
-// --- rank and relations ----------------------------------------------------------------------------------------------
+// --- rank and relations
+// ----------------------------------------------------------------------------------------------
 
 struct Certificate {
   std::uint64_t prime = 0;
@@ -59,7 +62,8 @@ struct Rank {
   std::uint64_t rank = 0;
   std::uint64_t columns = 0;
   std::uint64_t nullity = 0;
-  bool proved = true;            ///< false when columns hold log, sqrt, exp or asinh: these count as independent
+  bool proved =
+      true;  ///< false when columns hold log, sqrt, exp or asinh: these count as independent
   std::optional<Certificate> certificate;
 };
 
@@ -68,14 +72,14 @@ enum class Standing : std::uint8_t { exact, exact_except, near };
 struct Violation {
   std::string file;
   std::uint64_t line = 0, row = 0;
-  std::string residual;                                         ///< exact, as a decimal or fraction
-  std::vector<std::pair<std::string, std::string>> cells;      ///< source column, cell
+  std::string residual;                                    ///< exact, as a decimal or fraction
+  std::vector<std::pair<std::string, std::string>> cells;  ///< source column, cell
 };
 
 struct RelationTerm {
-  int column = -1;              ///< design column
-  std::string exact;            ///< exact standings: integer; near: empty
-  double coefficient = 0;       ///< near: number; exact standings: its double
+  int column = -1;         ///< design column
+  std::string exact;       ///< exact standings: integer; near: empty
+  double coefficient = 0;  ///< near: number; exact standings: its double
 };
 
 struct RelationFinding {
@@ -83,100 +87,124 @@ struct RelationFinding {
   std::string text;
   std::vector<RelationTerm> terms;
   std::uint64_t rows_holding = 0, rows_violating = 0;
-  std::vector<Violation> violations;   ///< at most 50
-  std::string largest_residual;        ///< exact standings; "0" when it holds everywhere
+  std::vector<Violation> violations;  ///< at most 50
+  std::string largest_residual;       ///< exact standings; "0" when it holds everywhere
   double largest_residual_value = 0;
   std::string cause_kind, cause_text;
   std::vector<int> removable;
-  double condition_index = 0;          ///< near only
+  double condition_index = 0;  ///< near only
 };
 
-/// A 0/1 column, or the level left out of a set (column -1, `label` names it), that rests on fewer than 10 rows.
+/// A 0/1 column, or the level left out of a set (column -1, `label` names it), that rests on fewer
+/// than 10 rows.
 struct RareLevel {
   std::string label;
   int column = -1;
   std::uint64_t rows = 0;
 };
 
-// --- conditioning (methods: 3) ---------------------------------------------------------------------------------------
+// --- conditioning (methods: 3)
+// ---------------------------------------------------------------------------------------
 
 struct Digits {
-  double qr = 0, normal_equations = 0;                 ///< significant decimal digits left in double precision, >= 0
-  double qr_single = 0, normal_equations_single = 0;   ///< the same in single precision
+  double qr = 0,
+         normal_equations = 0;  ///< significant decimal digits left in double precision, >= 0
+  double qr_single = 0, normal_equations_single = 0;  ///< the same in single precision
 };
 
 struct Conditioning {
-  Vector singular_values;              ///< of the kept columns with unit length, descending; all, or the extreme ones
+  Vector singular_values;  ///< of the kept columns with unit length, descending; all, or the
+                           ///< extreme ones
+  Matrix right_vectors;    ///< kept columns x values: of the unit-length columns
   bool complete = true;
-  double condition_number = 1;         ///< scaled; inf when the smallest value is 0
-  Vector condition_indices;            ///< ascending
-  Matrix proportions;                  ///< values x kept columns; each column sums to 1 (complete case)
-  std::vector<int> proportions_rows;   ///< indices into singular_values of the rows that are reported
-  std::vector<std::vector<int>> tied_rows;  ///< groups of singular values that agree to 12 digits: only their sum is defined
-  Vector raw_singular_values;          ///< of sqrt(W) X kept, descending
+  double condition_number = 1;  ///< scaled; inf when the smallest value is 0
+  Vector condition_indices;     ///< ascending
+  Matrix proportions;           ///< values x kept columns; each column sums to 1 (complete case)
+  std::vector<int>
+      proportions_rows;  ///< indices into singular_values of the rows that are reported
+  std::vector<std::vector<int>>
+      tied_rows;  ///< groups of singular values that agree to 12 digits: only their sum is defined
+  Vector raw_singular_values;  ///< of sqrt(W) X kept, descending
   double raw_condition_number = 1;
-  double log10_determinant = 0;              ///< of X'WX
-  std::optional<double> log10_determinant_correlation;  ///< of the non-constant kept columns; none when there are none
+  double log10_determinant = 0;                         ///< of X'WX
+  std::optional<double> log10_determinant_correlation;  ///< of the non-constant kept columns; none
+                                                        ///< when there are none
   Digits digits;
-  double known_digits = 15;            ///< digits that hold in the scaled figures: -log10(64 k u kappa)
-  double known_digits_raw = 15;        ///< the same in the raw singular values, with the raw condition number
+  double known_digits = 15;  ///< digits that hold in the scaled figures: -log10(64 k u kappa)
+  double known_digits_raw =
+      15;  ///< the same in the raw singular values, with the raw condition number
 };
 
 enum class CentredBy : std::uint8_t { column, span, none };
 
 struct Inflation {
-  int column = -1;                      ///< design column
-  std::optional<double> vif;            ///< none: undefined (constant column); inf never (kept columns are independent)
+  int column = -1;  ///< design column
+  std::optional<double>
+      vif;  ///< none: undefined (constant column); inf never (kept columns are independent)
   double vif_uncentred = 1;
-  std::optional<double> r_squared;      ///< on the other kept columns, centred when the constant is in the span
+  std::optional<double>
+      r_squared;  ///< on the other kept columns, centred when the constant is in the span
   std::optional<double> own_share;      ///< 1 - R^2, to its own relative accuracy
   double standard_error_per_sigma = 0;  ///< sqrt of the diagonal of (X'WX)^-1
 };
 
-// --- families (methods: 4) -------------------------------------------------------------------------------------------
+// --- families (methods: 4)
+// -------------------------------------------------------------------------------------------
 
 struct FamilyInflation {
-  int family = -1;                      ///< index into Design::families
+  int family = -1;  ///< index into Design::families
   int dimensions = 0;
   double generalised_vif = 1;
-  double per_dimension = 1;             ///< generalised_vif ^ (1 / (2 dimensions))
+  double per_dimension = 1;  ///< generalised_vif ^ (1 / (2 dimensions))
 };
 
 struct BetweenFamilies {
-  std::vector<int> families;            ///< those with dimension > 0, in order of size of the source set, then design order
-  Vector indices;                       ///< ascending
-  Matrix proportions;                   ///< indices x families, each column sums to 1
+  std::vector<int> families;  ///< those with dimension > 0, in order of size of the source set,
+                              ///< then design order
+  Vector indices;             ///< ascending
+  Matrix proportions;         ///< indices x families, each column sums to 1
   std::vector<FamilyInflation> inflation;  ///< aligned with `families`
 };
 
-// --- recorded precision (methods: 5) ---------------------------------------------------------------------------------
+// --- recorded precision (methods: 5)
+// ---------------------------------------------------------------------------------
 
 struct Step {
-  int column = -1;                      ///< table column
-  double step = 0;                      ///< 0: exact; for `binary` the step relative to the cell, 2^-50
-  enum class How : std::uint8_t { decimals, binary, whole, exact_code, given, given_exact } how = How::decimals;
+  int column = -1;  ///< table column
+  double step = 0;  ///< 0: exact; for `binary` the step relative to the cell, 2^-50
+  enum class How : std::uint8_t {
+    decimals,
+    binary,
+    whole,
+    exact_code,
+    given,
+    given_exact
+  } how = How::decimals;
 };
 
 struct Recording {
   std::vector<Step> steps;
-  Vector distance_ratios;                   ///< ascending, whole numbers taken as exact; empty: no noise (infinite)
-  Vector distance_ratios_whole_rounded;     ///< whole numbers taken as rounded to 1
-  std::vector<int> direction;               ///< design columns that carry the direction of the smallest ratio
+  Vector distance_ratios;  ///< ascending, whole numbers taken as exact; empty: no noise (infinite)
+  Vector distance_ratios_whole_rounded;  ///< whole numbers taken as rounded to 1
+  std::vector<int> direction;  ///< design columns that carry the direction of the smallest ratio
   std::vector<int> direction_whole_rounded;
-  std::vector<std::optional<double>> attenuation;  ///< aligned with kept columns; none where no noise reaches the coefficient
-  bool whole_numbers_matter = false;        ///< some step is `whole`
+  std::vector<std::optional<double>>
+      attenuation;  ///< aligned with kept columns; none where no noise reaches the coefficient
+  bool whole_numbers_matter = false;  ///< some step is `whole`
 };
 
-// --- contrasts -------------------------------------------------------------------------------------------------------
+// --- contrasts
+// -------------------------------------------------------------------------------------------------------
 
 struct ContrastFinding {
   std::string text;
   bool estimable = false;
   std::optional<double> standard_error_per_sigma;
-  std::string blocking_relation;   ///< when not estimable: the relation that is in the way, as text
+  std::string blocking_relation;  ///< when not estimable: the relation that is in the way, as text
 };
 
-// --- the whole -------------------------------------------------------------------------------------------------------
+// --- the whole
+// -------------------------------------------------------------------------------------------------------
 
 /// What was asked, for the document's `options` (no threads, memory, paths or colour).
 using OptionRecord = std::vector<std::pair<std::string, std::string>>;
@@ -192,31 +220,32 @@ struct Audit {
   OptionRecord options;
   SourceRecord source;
   table::Schema schema;
-  design::Design design;                 ///< settled, families assigned
+  design::Design design;  ///< settled, families assigned
   std::uint64_t rows_read = 0, rows_used = 0;
   std::vector<design::Exclusion> excluded;
   double sum_of_weights = 0;
-  std::vector<scan::ColumnRecord> column_records;   ///< aligned with design.columns
-  Vector column_norms;                              ///< (sum w x^2)^1/2, aligned with design.columns
-  std::int64_t residual_degrees_of_freedom = 0;     ///< rows used - rank
-  int passes = 2;                                   ///< over the data
+  std::vector<scan::ColumnRecord> column_records;  ///< aligned with design.columns
+  Vector column_norms;                             ///< (sum w x^2)^1/2, aligned with design.columns
+  std::int64_t residual_degrees_of_freedom = 0;    ///< rows used - rank
+  int passes = 2;                                  ///< over the data
 
   Rank rank;
-  std::vector<RelationFinding> relations;           ///< ordered by standing, number of columns, design order
+  std::vector<RelationFinding> relations;  ///< ordered by standing, number of columns, design order
   std::uint64_t relations_omitted = 0;
   std::vector<RareLevel> rare_levels;
-  std::vector<int> kept, left_out;                  ///< design columns, in design order
+  std::vector<int> kept, left_out;  ///< design columns, in design order
   CentredBy centred_by = CentredBy::none;
-  std::vector<std::string> constant_from;           ///< centred_by span: labels whose combination is the constant
+  std::vector<std::string>
+      constant_from;  ///< centred_by span: labels whose combination is the constant
 
   Conditioning conditioning;
-  std::vector<Inflation> inflation;                 ///< aligned with kept
+  std::vector<Inflation> inflation;  ///< aligned with kept
   BetweenFamilies between;
   Recording recording;
   std::vector<ContrastFinding> contrasts;
   Solver solver = Solver::normal;
   Verdict verdict;
-  std::vector<design::Note> notes;                  ///< design notes and the audit's own
+  std::vector<design::Note> notes;  ///< design notes and the audit's own
 };
 
 // Words as in the document.

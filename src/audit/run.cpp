@@ -124,7 +124,14 @@ void fill_figures(const scan::Digest& digest, const std::vector<int>& constant_s
     const scan::ColumnRecord& record = digest.columns[static_cast<std::size_t>(column)];
     is_constant.push_back(record.min == record.max);
   }
-  audit.conditioning = conditioning_of(digest.factor, audit.kept, is_constant);
+  const bool singular = std::none_of(constant_support.begin(), constant_support.end(),
+                                     [&](int column) {
+                                       const scan::ColumnRecord& record =
+                                           digest.columns[static_cast<std::size_t>(column)];
+                                       return record.min == record.max;
+                                     }) &&
+                        audit.centred_by == CentredBy::span;
+  audit.conditioning = conditioning_of(digest.factor, audit.kept, is_constant, singular);
   audit.inflation = inflation_of(digest.factor, audit.kept, is_constant, audit.centred_by);
   audit.between = between_families(digest.factor, audit.design, audit.kept, constant_support);
   audit.recording = recording_of(digest, audit.kept, recorded_steps(digest, audit.schema, given));

@@ -71,7 +71,8 @@ int check(const std::vector<std::string>& arguments) {
   if (!audit) return failed(audit.error());
   // The file first: when it cannot be written, nothing is printed that looks like success.
   if (!options.json.empty()) {
-    const std::string document = report::to_json_text(audit.value(), program_version);
+    const std::string document =
+        report::to_json_text(report::verdict_document(audit.value(), program_version));
     const Result<void> written =
         options.json == "-" ? write_standard_output(document) : write_file(options.json, document);
     if (!written) return failed(written.error());
