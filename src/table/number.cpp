@@ -111,7 +111,8 @@ Canonical canonical(const Number& number) {
 NumberStatus parse_number(std::string_view cell, char decimal_mark, Number& number) {
   number = {};
   cell = without_blanks(cell);
-  if (ShortNumber quick; parse_short(cell.data(), cell.data() + cell.size(), decimal_mark, quick)) {
+  const char* const end = cell.data() + cell.size();
+  if (ShortNumber quick; parse_short(cell.data(), end, end, decimal_mark, quick)) {
     number.mantissa = quick.mantissa;
     number.decimals = quick.decimals;
     number.significant_digits = digits_in(quick.mantissa);

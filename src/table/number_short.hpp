@@ -8,8 +8,11 @@
 #pragma once
 
 #include <array>
+#include <bit>
+#include <cstddef>
 #include <cstdint>
 #include <cstdlib>
+#include <cstring>
 
 namespace gramproof::table {
 
@@ -32,12 +35,54 @@ inline constexpr std::array<std::int64_t, 19> integer_powers_of_ten = [] {
   return powers;
 }();
 
+inline constexpr std::uint64_t every_byte = 0x0101010101010101u;
+
+/// Up to eight unsigned characters, of which the last `length` (1 .. 8) bytes of `word` are the
+/// text in memory order (little endian) and the others are '0'.
+inline bool parse_word(std::uint64_t word, int length, char decimal_mark, ShortNumber& number) {
+  const std::uint64_t differs = word ^ (every_byte * static_cast<unsigned char>(decimal_mark));
+  // The lowest set bit marks the first byte that is zero; higher ones may be false.
+  const std::uint64_t marks = (differs - every_byte) & ~differs & (every_byte * 0x80);
+  int decimals = 0;
+  if (marks != 0) {
+    const int at = std::countr_zero(marks) & ~7;  // bits below the mark's byte
+    const std::uint64_t below = word & ((std::uint64_t{1} << at) - 1);
+    const std::uint64_t upto = at == 56 ? ~std::uint64_t{0} : (std::uint64_t{1} << (at + 8)) - 1;
+    word = (word & ~upto) | (below << 8) | '0';
+    decimals = 7 - at / 8;
+    if (--length == 0) return false;
+  }
+  const std::uint64_t digits = word - every_byte * '0';
+  if ((((word + every_byte * 0x46) | digits) & (every_byte * 0x80)) != 0) return false;
+  const std::uint64_t pairs = digits * 10 + (digits >> 8);  // in every second byte
+  constexpr std::uint64_t low_bytes = 0x000000FF000000FFu;
+  const std::uint64_t odd = (pairs & low_bytes) * (100 + (std::uint64_t{1'000'000} << 32));
+  const std::uint64_t even = ((pairs >> 16) & low_bytes) * (1 + (std::uint64_t{10'000} << 32));
+  number.mantissa = static_cast<std::int64_t>((odd + even) >> 32);
+  number.decimals = decimals;
+  return true;
+}
+
 /// Reads [at, end) whole: optional sign, digits with at most one decimal mark, 1 to 18 digits in
-/// all (leading zeros count). False: another spelling, or no number; nothing is known then.
-inline bool parse_short(const char* at, const char* end, char decimal_mark, ShortNumber& number) {
+/// all (leading zeros count). False: another spelling, or no number; nothing is known then. Bytes
+/// up to `readable` (>= end) may be looked at.
+inline bool parse_short(const char* at, const char* end, const char* readable, char decimal_mark,
+                        ShortNumber& number) {
   if (at == end) return false;
   const bool negative = *at == '-';
   if (negative || *at == '+') ++at;
+  const std::ptrdiff_t length = end - at;
+  if (std::endian::native == std::endian::little && length >= 1 && length <= 8 &&
+      readable - at >= 8) {
+    std::uint64_t word = 0;
+    std::memcpy(&word, at, 8);
+    const int unused = 64 - 8 * static_cast<int>(length);
+    word <<= unused;
+    if (unused > 0) word |= (every_byte * '0') >> (64 - unused);
+    if (!parse_word(word, static_cast<int>(length), decimal_mark, number)) return false;
+    if (negative) number.mantissa = -number.mantissa;
+    return true;
+  }
   std::uint64_t mantissa = 0;  // wraps beyond 19 digits; such texts are refused below
   const char* const first = at;
   while (at != end && static_cast<unsigned char>(*at - '0') < 10) {

@@ -16,7 +16,7 @@ class PieceParser {
  public:
   PieceParser(const Source::State& state, const Schema& schema, const std::vector<Want>& wants,
               const RawPiece& raw)
-      : state_(state), schema_(schema), raw_(raw) {
+      : state_(state), schema_(schema), raw_(raw), readable_(raw.bytes.data() + raw.bytes.size()) {
     piece_.index = raw.index;
     piece_.file = raw.file;
     piece_.rows = raw.records;
@@ -78,7 +78,7 @@ class PieceParser {
     ShortNumber quick;
     const char* const begin = cell.text.data();
     if (!state_.missing.like_numbers() &&
-        parse_short(begin, begin + cell.text.size(), state_.decimal_mark, quick) &&
+        parse_short(begin, begin + cell.text.size(), readable_, state_.decimal_mark, quick) &&
         short_value(quick, column.value[row])) {
       column.mantissa[row] = quick.mantissa;
       column.decimals[row] = static_cast<std::int16_t>(quick.decimals);
@@ -150,6 +150,7 @@ class PieceParser {
   const Source::State& state_;
   const Schema& schema_;
   const RawPiece& raw_;
+  const char* readable_;      ///< the end of the piece's bytes
   std::vector<Want> wanted_;  ///< in the order of the file
   Piece piece_;
   std::string scratch_;

@@ -14,7 +14,10 @@ class PieceSurveyor {
  public:
   PieceSurveyor(const Source::State& state, const std::vector<Listing>& listings,
                 std::size_t numeric_levels, PieceSurvey& survey)
-      : state_(state), numeric_levels_(numeric_levels), survey_(survey) {
+      : state_(state),
+        numeric_levels_(numeric_levels),
+        survey_(survey),
+        readable_(survey.raw->bytes.data() + survey.raw->bytes.size()) {
     survey_.columns.assign(listings.size(), {});
     next_check_.assign(listings.size(), probed_texts + 1);
     for (const std::size_t column : state.layouts[survey.raw->file].table_column) {
@@ -118,7 +121,7 @@ class PieceSurveyor {
     double value = 0;
     const char* const begin = cell.text.data();
     if (!state_.missing.like_numbers() &&
-        parse_short(begin, begin + cell.text.size(), state_.decimal_mark, quick) &&
+        parse_short(begin, begin + cell.text.size(), readable_, state_.decimal_mark, quick) &&
         short_value(quick, value)) {
       ++column.present;
       add_short(column.range, quick, value);
@@ -161,6 +164,7 @@ class PieceSurveyor {
   const Source::State& state_;
   std::size_t numeric_levels_;
   PieceSurvey& survey_;
+  const char* readable_;                 ///< the end of the piece's bytes
   std::vector<std::size_t> next_check_;  ///< number of texts at which a column may be cut
   std::vector<CellTarget> cells_;        ///< in the order of the file
   std::string scratch_;

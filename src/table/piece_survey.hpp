@@ -54,12 +54,12 @@ struct PieceSurvey {
 };
 
 /// Surveys a piece. A pure function of its arguments, safe in any thread. `numeric_levels`: a probed column of numbers is cut
-/// once it has more than 256 texts and more than so many distinct values. Errors: the format faults of parse_piece.
+/// once it has more than 64 texts and more than so many distinct values. Errors: the format faults of parse_piece.
 [[nodiscard]] Result<PieceSurvey> survey_piece(const Source::State& state, std::vector<Listing> listings,
                                                std::size_t numeric_levels, RawPiece raw);
 
-/// Texts of a column of numbers that are always listed.
-inline constexpr std::size_t probed_texts = 256;
+/// Texts of a column of numbers that are always listed. Few, because a table may have thousands of columns.
+inline constexpr std::size_t probed_texts = 64;
 
 /// The key under which equal values meet: plain_text for numbers in range, the text itself beyond.
 [[nodiscard]] std::string value_key(std::string_view text, CellClass kind, char decimal_mark);

@@ -11,11 +11,16 @@
 #pragma once
 
 #include <array>
+#include <bit>
 #include <cstddef>
 #include <cstdint>
 #include <string>
 #include <string_view>
 #include <vector>
+
+#ifdef __SSE2__
+#include <emmintrin.h>
+#endif
 
 #include "base/result.hpp"
 
@@ -77,8 +82,7 @@ class CellWalker {
   /// Reads a cell and what ends it: `last` tells whether it was the record's last one.
   FormatFault next(RawCell& cell, bool& last) {
     cell.at = at_;
-    const char* stop = at_;
-    while (stop != end_ && !stops_[static_cast<unsigned char>(*stop)]) ++stop;
+    const char* const stop = find_stop();
     if (stop != end_ && *stop == '"') return next_quoted(cell, stop, last);
     cell.quoted = cell.doubled_quotes = false;
     cell.text = without_blanks({at_, static_cast<std::size_t>(stop - at_)});
@@ -87,6 +91,26 @@ class CellWalker {
   }
 
  private:
+  /// The next separator, line break, carriage return or quote, or the end. Sixteen bytes at a time
+  /// where the processor can: cells have uneven lengths, so that a loop over their bytes ends in a
+  /// branch it cannot foresee.
+  [[nodiscard]] const char* find_stop() const {
+    const char* stop = at_;
+#ifdef __SSE2__
+    for (; end_ - stop >= 16; stop += 16) {
+      const __m128i bytes = _mm_loadu_si128(reinterpret_cast<const __m128i*>(stop));
+      const __m128i ends = _mm_or_si128(_mm_cmpeq_epi8(bytes, _mm_set1_epi8(separator_)),
+                                        _mm_cmpeq_epi8(bytes, _mm_set1_epi8('\n')));
+      const __m128i others = _mm_or_si128(_mm_cmpeq_epi8(bytes, _mm_set1_epi8('\r')),
+                                          _mm_cmpeq_epi8(bytes, _mm_set1_epi8('"')));
+      const int found = _mm_movemask_epi8(_mm_or_si128(ends, others));
+      if (found != 0) return stop + std::countr_zero(static_cast<unsigned>(found));
+    }
+#endif
+    while (stop != end_ && !stops_[static_cast<unsigned char>(*stop)]) ++stop;
+    return stop;
+  }
+
   /// Steps over the separator or line break at `stop`.
   FormatFault finish(const char* stop, bool& last) {
     if (stop != end_ && *stop == separator_) {

@@ -1,7 +1,16 @@
 // src/table/source.hpp - the files of one data set as a stream of raw pieces.
 //
 // Splitting into records is serial and cheap; parsing cells is pure and runs in any thread. No file is held whole. Standard input
-// ("-") is spooled from its first byte to an unlinked temporary file (TMPDIR), so that further passes are possible.
+// ("-"), like every pipe, is spooled from its first byte to an unlinked temporary file (TMPDIR), so that further passes are
+// possible. How bytes are read (each rule has a file in fixtures/accept or fixtures/reject):
+//   text       UTF-8, a byte order mark allowed; LF or CRLF, the last line with or without
+//   header     the first line; names without the blanks around them, unique, not empty but for the first; at most 100,000
+//   rows       as many cells as the header; blank lines at the end of a file are nothing, in the middle an error, in a file
+//              of one column a missing cell (so a last missing cell of such a file is written NA or "")
+//   cells      RFC 4180 quoting; blanks around a cell are ignored, blanks inside quotes belong to a text but not to a number;
+//              at most 16 MB, a row at most 64 MB
+//   missing    compared without blanks around, quoted or not, with exact case, before the cell is read as a number
+// The separator is recognised from the first 256 KB, the decimal mark on all data where these leave it open (dialect.hpp).
 #pragma once
 
 #include <cstdint>

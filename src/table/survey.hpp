@@ -56,7 +56,7 @@ struct ColumnFacts {
   std::vector<Level> levels;
   bool levels_cut = false;               ///< more distinct values than were to be listed: `levels` is then empty
   std::uint64_t distinct_at_least = 0;   ///< number of distinct values, a lower bound when cut
-  /// Level::text -> index into levels. Look-ups take string views.
+  /// Level::text -> index into levels, of text and numeric columns alike. Look-ups take string views.
   std::unordered_map<std::string, std::int32_t, TextHash, std::equal_to<>> code_of;
 };
 
@@ -79,7 +79,8 @@ struct SurveyOptions {
   std::function<void(const Progress&)> on_progress;  ///< called from the consuming thread, at most once a piece; may be empty
 };
 
-/// One pass over the whole source. The result does not depend on `threads`. Errors: as Source::next and the format faults of
+/// One pass over the whole source, two where a text comes behind many numbers of its column or a decimal comma behind whole
+/// numbers only. The result does not depend on `threads`. Errors: as Source::next and the format faults of
 /// parse_piece (text in a number is no error here: it makes the column a text column); a file without a data row.
 /// Memory: the distinct values listed, plus the pieces under way.
 [[nodiscard]] Result<Schema> survey(Source& source, const SurveyOptions& options);

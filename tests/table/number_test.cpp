@@ -10,6 +10,8 @@
 #include <string>
 #include <vector>
 
+#include "table/number_short.hpp"
+
 using namespace gramproof::table;
 
 namespace {
@@ -265,4 +267,32 @@ TEST_CASE("comparison is exact and orders all pairs of an ascending list") {
   REQUIRE(parse_number("0e5", '.', long_zero) == NumberStatus::number);
   CHECK(compare(one, same) == 0);
   CHECK(compare(zero, long_zero) == 0);
+}
+
+TEST_CASE("the word-wise and the digit-wise reading of short texts agree") {
+  const unsigned seed = 31;
+  CAPTURE(seed);
+  std::mt19937 random(seed);
+  static const std::string alphabet =
+      "0123456789012345678901234567890123456789..,-+e/:\x7f\xB0\xFF ";
+  int numbers = 0;
+  for (int i = 0; i < 200'000; ++i) {
+    std::string text(1 + random() % 10, '0');
+    for (char& c : text) c = alphabet[random() % alphabet.size()];
+    const std::string behind = text + ",9.9,8,7,";
+    const char mark = random() % 4 == 0 ? ',' : '.';
+    const char* const end = text.data() + text.size();
+    const char* const cell = behind.data();
+    ShortNumber by_digit, by_word;
+    const bool digit_wise = parse_short(text.data(), end, end, mark, by_digit);
+    const bool word_wise =
+        parse_short(cell, cell + text.size(), cell + behind.size(), mark, by_word);
+    CAPTURE(text);
+    REQUIRE(digit_wise == word_wise);
+    if (!digit_wise) continue;
+    ++numbers;
+    REQUIRE(by_digit.mantissa == by_word.mantissa);
+    REQUIRE(by_digit.decimals == by_word.decimals);
+  }
+  CHECK(numbers > 20'000);
 }
