@@ -26,6 +26,9 @@ class FamilySpace {
       }
       own_.push_back(std::move(own));
     }
+    // Shares that add up to one, without a constant, differ in nothing but the constant: taking it
+    // out would make competitors of columns that are told apart perfectly. It stays in then.
+    if (!constant_has_a_home()) support_.clear();
   }
 
   [[nodiscard]] const std::vector<int>& own(int family) const {
@@ -72,12 +75,10 @@ class FamilySpace {
   /// Orthonormal basis of what `columns` add beside a base.
   [[nodiscard]] Matrix beside(const Matrix& base, const std::vector<int>& columns,
                               Index rank) const {
+    // What is left is not scaled to one length: of a column inside the base's span that is rounding
+    // alone, which must come last among the pivots.
     Matrix rest = columns_(Eigen::all, columns);
     project_out(base, rest);
-    for (Index j = 0; j < rest.cols(); ++j) {
-      const double length = rest.col(j).norm();
-      if (length > 0) rest.col(j) /= length;
-    }
     return orthonormal(rest, rank);
   }
 
@@ -103,6 +104,21 @@ class FamilySpace {
     return std::all_of(support_.begin(), support_.end(), [&](int column) {
       return std::find(columns.begin(), columns.end(), column) != columns.end();
     });
+  }
+
+  /// The constant is a column, or lies in the span of one family and those under it.
+  [[nodiscard]] bool constant_has_a_home() const {
+    if (std::any_of(support_.begin(), support_.end(), [&](int column) {
+          return design_.columns[static_cast<std::size_t>(column)].constant;
+        })) {
+      return true;
+    }
+    for (std::size_t f = 0; f < own_.size(); ++f) {
+      std::vector<int> columns = columns_under(static_cast<int>(f));
+      columns.insert(columns.end(), own_[f].begin(), own_[f].end());
+      if (covers_support(columns)) return true;
+    }
+    return false;
   }
 
   static Matrix orthonormal(const Matrix& columns, Index rank) {

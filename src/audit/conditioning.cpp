@@ -36,10 +36,12 @@ Digits digits_of(double condition) {
           left(digits_of_single, 2)};
 }
 
-/// The matrix in the columns' own units times 2^-shift; the shift keeps it from overflow.
+/// The matrix in the columns' own units times 2^-shift; the shift puts the sizes of the columns
+/// evenly about 1, so that neither the largest overflows nor the smallest loses digits.
 Matrix in_own_units(const factor::Factor& factor, int& shift) {
-  const int largest = *std::max_element(factor.exponents.begin(), factor.exponents.end());
-  shift = std::max(0, largest - 1000);
+  const auto [smallest, largest] =
+      std::minmax_element(factor.exponents.begin(), factor.exponents.end());
+  shift = (*smallest + *largest) / 2;
   Matrix raw = factor.r;
   for (Index j = 0; j < raw.cols(); ++j) {
     const int exponent = factor.exponents[static_cast<std::size_t>(j)] - shift;

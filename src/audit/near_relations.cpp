@@ -30,34 +30,67 @@ std::vector<int> members(const Vector& direction) {
   return result;
 }
 
+/// Digits of a coefficient up to the second uncertain one, from two to five.
+int digits_worth_writing(double coefficient, double error) {
+  constexpr int fewest = 2, most = 5;
+  if (!(error > 0)) return most;
+  const double sure = std::log10(std::abs(coefficient) / error);
+  if (!(sure > 0)) return fewest;
+  return std::min(most, fewest + static_cast<int>(sure));
+}
+
+struct Refit {
+  Vector coefficients;
+  std::vector<int> digits;  ///< significant digits worth writing of each coefficient
+};
+
 /// Least squares of the first design column on the others, in the columns' own units.
-Vector refit(const factor::Factor& factor, const std::vector<int>& columns) {
+Refit refit(const factor::Factor& factor, const std::vector<int>& columns) {
   std::vector<int> order(columns.begin() + 1, columns.end());
   order.push_back(columns.front());
   const factor::Factor own = factor::select(factor, order);
   const auto others = static_cast<Index>(order.size()) - 1;
-  Vector coefficients = own.r.topLeftCorner(others, others)
-                            .triangularView<Eigen::Upper>()
-                            .solve(own.r.col(others).head(others));
+  const Matrix triangle = own.r.topLeftCorner(others, others);
+  Refit result;
+  result.coefficients =
+      triangle.triangularView<Eigen::Upper>().solve(own.r.col(others).head(others));
+  const double freedom = std::max(1.0, static_cast<double>(own.rows - others));
+  const Vector errors = std::abs(own.r(others, others)) / std::sqrt(freedom) *
+                        factor::triangular_inverse(triangle).rowwise().norm();
   for (Index j = 0; j < others; ++j) {
-    coefficients[j] = std::ldexp(coefficients[j],
-                                 own.exponents.back() - own.exponents[static_cast<std::size_t>(j)]);
+    double& coefficient = result.coefficients[j];
+    result.digits.push_back(digits_worth_writing(coefficient, errors[j]));
+    coefficient =
+        std::ldexp(coefficient, own.exponents.back() - own.exponents[static_cast<std::size_t>(j)]);
   }
-  return coefficients;
+  return result;
 }
 
-std::string number(double value) {
-  return fmt::format("{:.5g}", value);
+/// "10.764", "2.3·10^-7": rounded to `digits` significant digits, no trailing zeros.
+std::string number(double value, int digits) {
+  if (value == 0 || !std::isfinite(value)) return value == 0 ? "0" : "?";
+  const int exponent = static_cast<int>(std::floor(std::log10(value)));
+  if (exponent < -5 || exponent > 14) {
+    return number(value / std::pow(10.0, exponent), digits) + "\u00b710^" +
+           std::to_string(exponent);
+  }
+  // Whole digits are all written: 12346 is no harder to read than 12350.
+  std::string text = fmt::format("{:.{}f}", value, std::max(0, digits - 1 - exponent));
+  if (text.find('.') != std::string::npos) {
+    text.erase(text.find_last_not_of('0') + 1);
+    if (text.back() == '.') text.pop_back();
+  }
+  return text;
 }
 
 /// "a + 2.5·b - 3": the constant as its number.
 std::string right_side(const design::Design& design, const std::vector<int>& columns,
-                       const Vector& coefficients) {
+                       const Refit& refitted) {
   std::string text;
   for (std::size_t i = 1; i < columns.size(); ++i) {
-    const double value = coefficients[static_cast<Index>(i) - 1];
+    const double value = refitted.coefficients[static_cast<Index>(i) - 1];
     const design::DesignColumn& column = design.columns[static_cast<std::size_t>(columns[i])];
-    const std::string size = number(std::abs(value));
+    const std::string size = number(std::abs(value), refitted.digits[i - 1]);
     text += value < 0 ? (text.empty() ? "\u2212" : " \u2212 ") : (text.empty() ? "" : " + ");
     if (column.constant) {
       text += size;
@@ -71,19 +104,20 @@ std::string right_side(const design::Design& design, const std::vector<int>& col
 std::string cause_of(const design::Design& design, const std::vector<int>& columns) {
   std::set<int> families;
   std::vector<std::string> names;
+  bool all_zero_one = true;
   for (const int j : columns) {
     const design::DesignColumn& column = design.columns[static_cast<std::size_t>(j)];
     if (column.constant) continue;
+    all_zero_one = all_zero_one && column.zero_one;
     families.insert(column.family);
     names.push_back(column.label);
   }
   if (families.size() == 1 && *families.begin() >= 0) {
     const std::string& family = design.families[static_cast<std::size_t>(*families.begin())].name;
-    return fmt::format(
-        "All of it is made of `{}`{}: centring it, or orthogonal polynomials, takes this away and "
-        "leaves the "
-        "fitted values as they are.",
-        family, columns.size() > names.size() ? " and the constant" : "");
+    return fmt::format("All of it is made of `{}`{}: {}, and the fitted values stay as they are.",
+                       family, columns.size() > names.size() ? " and the constant" : "",
+                       all_zero_one ? "another level left out takes this away"
+                                    : "centring it, or orthogonal polynomials, takes this away");
   }
   return fmt::format("{} move together in these rows and compete for the same effect.",
                      names_in_words(names, 6));
@@ -91,17 +125,17 @@ std::string cause_of(const design::Design& design, const std::vector<int>& colum
 
 RelationFinding finding_of(const factor::Factor& factor, const design::Design& design,
                            const std::vector<int>& columns, double index) {
-  const Vector coefficients = refit(factor, columns);
+  const Refit refitted = refit(factor, columns);
   RelationFinding finding;
   finding.standing = Standing::near;
   finding.condition_index = index;
   finding.text = design.columns[static_cast<std::size_t>(columns.front())].label + " \u2248 " +
-                 right_side(design, columns, coefficients);
+                 right_side(design, columns, refitted);
   finding.terms.push_back({columns.front(), "", 1});
   for (std::size_t i = 1; i < columns.size(); ++i) {
-    finding.terms.push_back({columns[i], "", -coefficients[static_cast<Index>(i) - 1]});
+    finding.terms.push_back({columns[i], "", -refitted.coefficients[static_cast<Index>(i) - 1]});
   }
-  finding.cause_kind = "other";
+  finding.cause_kind = "near";
   finding.cause_text = cause_of(design, columns);
   finding.removable = columns;
   std::sort(finding.removable.begin(), finding.removable.end());

@@ -1,5 +1,4 @@
 #include <Eigen/Eigenvalues>
-#include <Eigen/SVD>
 #include <algorithm>
 #include <cmath>
 
@@ -83,8 +82,11 @@ Matrix root_of(const Matrix& noise) {
   const Matrix correlation =
       sizes.cwiseInverse().asDiagonal() * noise(noisy, noisy) * sizes.cwiseInverse().asDiagonal();
   const Eigen::SelfAdjointEigenSolver<Matrix> solver(correlation);
-  // Eigenvalues of a correlation matrix are at least 0; the rounding of the sums leaves a few k u.
-  const Vector values = solver.eigenvalues().cwiseMax(0.0).cwiseSqrt();
+  // N comes from sums of products, rounded to some tens of k u: a direction below that is taken to
+  // carry no noise. Its square root, 1e-7, would else pass for noise in a near-singular direction.
+  const double floor = 64 * static_cast<double>(count) * unit_roundoff;
+  const Vector values =
+      solver.eigenvalues().unaryExpr([floor](double v) { return v > floor ? std::sqrt(v) : 0.0; });
   const Matrix root = values.asDiagonal() * solver.eigenvectors().transpose() * sizes.asDiagonal();
   Matrix result = Matrix::Zero(count, noise.cols());
   result(Eigen::all, noisy) = root;
@@ -107,14 +109,16 @@ Distances distances(const Matrix& root, const Kept& kept, const std::vector<int>
     result.ratios = Vector::Zero(1);
     return result;
   }
-  const Eigen::BDCSVD<Matrix> svd(carried, Eigen::ComputeThinV);
-  const Vector values = svd.singularValues();
+  Matrix square = Matrix::Zero(carried.cols(), carried.cols());
+  square.topRows(carried.rows()) = carried;
+  const factor::Spectrum spectrum = factor::decompose(square);
+  const Vector& values = spectrum.values;
   const double floor = static_cast<double>(kept.scaled.cols()) * unit_roundoff * values[0];
   Index count = 0;
   while (count < values.size() && values[count] > floor) ++count;
   result.ratios = values.head(count).cwiseInverse();
   if (count == 0) return result;
-  const Vector direction = kept.scaled.triangularView<Eigen::Upper>().solve(svd.matrixV().col(0));
+  const Vector direction = kept.scaled.triangularView<Eigen::Upper>().solve(spectrum.right.col(0));
   const double largest = direction.cwiseAbs().maxCoeff();
   for (Index j = 0; j < direction.size(); ++j) {
     if (std::abs(direction[j]) >= 0.1 * largest)

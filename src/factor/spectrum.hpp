@@ -21,8 +21,8 @@ inline constexpr Index smallest_computed = 30;
 
 /// Full decomposition by one-sided Jacobi rotations or by divide and conquer according to size: the
 /// error of each value is at most a modest multiple of k u sigma_1 (Weyl), relative to the
-/// column-scaled matrix. r: k x k upper triangular, finite.
-[[nodiscard]] Spectrum decompose(const Matrix& r);
+/// column-scaled matrix. matrix: k x k, finite.
+[[nodiscard]] Spectrum decompose(const Matrix& matrix);
 
 /// sigma_1 and the `smallest` smallest singular triplets of a non-singular upper triangular r by
 /// Lanczos (Spectra) on triangular solves with r and r' (never on r'r as a matrix), start vector
