@@ -29,14 +29,18 @@ struct Request {
 
 struct Syntax;  // parse tree with places; opaque to others
 
-/// Parsed design and condition. Errors: `where:offset` with the character (from 1) and what was expected.
+/// Parsed design and condition. Errors: `--design:14` with the character (from 1), or `file:line:character` for a design file,
+/// and what was expected; words whose columns are not built say what they wait for. Limits: nesting 64, brackets in brackets 8,
+/// 1,000 operations a term. O(length).
 [[nodiscard]] Result<std::shared_ptr<const Syntax>> parse(const Request& request);
 
 /// Names of columns inside levels(), all_levels(), steps(): their values must be listed by the survey even if numeric.
 [[nodiscard]] std::vector<std::string> columns_with_levels(const Syntax& syntax);
 
 /// Most design columns bind() may make: a larger design is refused with the count and --memory in the message.
-/// Errors: unknown names (with the nearest), text where a number is needed, a + of two sets, reserved words, ...
+/// The level named by `against` gives no provisional column. Errors: unknown names and levels (with the nearest), text where a
+/// number is needed, sets in arithmetic other than products, one label twice, a column spoiled for `rest`, a number out of range,
+/// too many columns; the first one met is returned. O(columns made * nodes).
 [[nodiscard]] Result<Design> bind(const Syntax& syntax, const Request& request, const table::Schema& schema,
                                   const std::string& data_name, std::size_t most_columns);
 
@@ -50,15 +54,19 @@ struct Settled {
   std::vector<int> left_out;
 };
 
-/// Families are assigned with `zero_one_groups`: groups of final... see families.hpp; called by the audit after the scan.
+/// Takes out the columns of levels that no used row has and, for levels(), the one left out: `against`, or the most frequent,
+/// ties to the first in listing order. Where no used row has the level of `against`, the most frequent is left out and a note
+/// says so. Products keep every combination of the levels that stay, empty cells too (they are a finding). Families and roles
+/// are assigned afterwards.
 [[nodiscard]] Settled settle(const Design& provisional, const table::Schema& schema, const LevelCounts& counts);
 
-/// Fills Design::families and DesignColumn::family. `disjoint(a, b)`: no used row has a 1 in both 0/1 columns a and b
-/// (indices of final columns): such columns coded by hand are grouped greedily in design order into one family, named
-/// after the first (methods: families).
+/// Fills Design::families and DesignColumn::family. `never_together[a][b]`: no used row has a 1 in both 0/1 columns a and b
+/// (indices of final columns): plain 0/1 columns of the table, coded by hand, are grouped greedily in design order into one
+/// family, named after the first, and so are their products with other sources. O(columns^2).
 void assign_families(Design& design, const table::Schema& schema, const std::vector<std::vector<bool>>& never_together);
 
-/// F is under G: every column of G is a product with a factor over F's sources alone; false for families not products_only.
+/// F is under G: every column of G is a product with a factor over F's sources alone; false for families not products_only, and
+/// for the constant, which is projected out on its own.
 [[nodiscard]] bool is_under(const Family& below, const Family& above);
 
 /// One part of a contrast: number * coefficient of a design column.
@@ -66,11 +74,13 @@ struct ContrastPart {
   int column = -1;
   table::Number number;
 };
-/// Parses 'age + 80*age^2' over the labels of a settled design. Errors: unknown label with the nearest.
+/// Parses 'age + 80*age^2' over the labels of a settled design; a part is looked up as a whole before numbers are taken out of
+/// it, so that labels which are sums or hold numbers are found. Errors: unknown label with the nearest, a label twice.
 [[nodiscard]] Result<std::vector<ContrastPart>> parse_contrast(const std::string& text, const Design& design,
                                                                const table::Schema& schema);
 
-/// Resolves names of --focus and --protect (labels, or texts of terms) to design columns and sets roles.
+/// Resolves names of --focus and --protect (labels, or texts of terms, however spaced) to design columns and sets roles; who is
+/// in both is protected. Errors: an unknown name with the nearest; a term without a column on the rows used.
 [[nodiscard]] Result<void> assign_roles(Design& design, const std::vector<std::string>& focus,
                                         const std::vector<std::string>& protect);
 

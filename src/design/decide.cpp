@@ -132,6 +132,30 @@ table::Number number_of(const Expression& expression, const table::Piece& piece,
   return number;
 }
 
+/// A leaf's double, and whether its decimals have at most 15 digits.
+struct Leaf {
+  double value = 0;
+  bool is_short = false;
+};
+
+bool has_fifteen_digits(std::int64_t mantissa) {
+  constexpr std::int64_t sixteen_digits = 1'000'000'000'000'000;
+  return mantissa < sixteen_digits && mantissa > -sixteen_digits;
+}
+
+Leaf leaf_of(const Expression& expression, const table::Piece& piece, std::size_t row) {
+  if (expression.operation == Operation::number) {
+    const table::Number& number = expression.number;
+    return {number.value, number.wide.empty() && has_fifteen_digits(number.mantissa)};
+  }
+  if (expression.operation == Operation::row_number) {
+    return {static_cast<double>(piece.row[row]),
+            has_fifteen_digits(static_cast<std::int64_t>(piece.row[row]))};
+  }
+  const table::PieceColumn& column = piece.columns[static_cast<std::size_t>(expression.column)];
+  return {column.value[row], column.wide.empty() && has_fifteen_digits(column.mantissa[row])};
+}
+
 }  // namespace
 
 bool is_leaf(const Expression& expression) {
@@ -152,18 +176,15 @@ bool has_certain_zero(const Expression& expression) {
   }
 }
 
-int order_of_numbers(const table::Number& left, const table::Number& right) {
+int order_of_leaves(const Expression& left, const Expression& right, const table::Piece& piece,
+                    std::size_t row) {
   // Rounding to nearest is monotone, so different doubles are in the order of the decimals. Equal
   // doubles with at most 15 digits each come from equal decimals: neighbouring 15-digit decimals
   // are further apart than doubles.
-  if (left.value != right.value) return left.value < right.value ? -1 : 1;
-  constexpr std::int64_t fifteen_digits = 1'000'000'000'000'000;
-  const auto is_short = [](const table::Number& number) {
-    return number.wide.empty() && number.mantissa < fifteen_digits &&
-           number.mantissa > -fifteen_digits;
-  };
-  if (is_short(left) && is_short(right)) return 0;
-  return table::compare(left, right);
+  const Leaf a = leaf_of(left, piece, row), b = leaf_of(right, piece, row);
+  if (a.value != b.value) return a.value < b.value ? -1 : 1;
+  if (a.is_short && b.is_short) return 0;
+  return table::compare(number_of(left, piece, row), number_of(right, piece, row));
 }
 
 bool holds(Comparison comparison, int order) {
@@ -186,7 +207,7 @@ bool holds(Comparison comparison, int order) {
 std::optional<int> order_of(const Expression& left, const Expression& right,
                             const table::Piece& piece, std::size_t row) {
   if (is_leaf(left) && is_leaf(right)) {
-    return order_of_numbers(number_of(left, piece, row), number_of(right, piece, row));
+    return order_of_leaves(left, right, piece, row);
   }
   const Bounded difference = sum(bounded(left, piece, row), -1, bounded(right, piece, row));
   if (std::abs(difference.value) > difference.error) return difference.value < 0 ? -1 : 1;

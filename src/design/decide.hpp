@@ -29,8 +29,8 @@ namespace gramproof::design {
 /// True if `order`, the sign of left - right, satisfies the comparison.
 [[nodiscard]] bool holds(Comparison comparison, int order);
 
-/// Order of two numbers of which the doubles agree or not. O(1) but for ties of more than 15
-/// digits.
-[[nodiscard]] int order_of_numbers(const table::Number& left, const table::Number& right);
+/// The order of two leaves. O(1) but for ties of more than 15 digits.
+[[nodiscard]] int order_of_leaves(const Expression& left, const Expression& right,
+                                  const table::Piece& piece, std::size_t row);
 
 }  // namespace gramproof::design

@@ -17,7 +17,7 @@ enum class Undefined : std::uint8_t { exclude, stop };
 struct LevelSet {
   int column = -1;                    ///< table column
   bool leave_one_out = true;          ///< levels(): one level is left out; all_levels(): none
-  int against = -1;                   ///< level left out by the analyst's word; -1: the most frequent on the rows used
+  int against = -1;                   ///< level left out by the analyst's word (no column is made of it); -1: the most frequent on the rows used
   std::vector<int> order;             ///< all levels (indices into ColumnFacts::levels) in listing order: numbers if all are, else UTF-8 bytes
 };
 

@@ -25,9 +25,6 @@ double whole_power(double base, int exponent) {
   switch (exponent) {
     case 1:
       return base;
-    case 2:
-      value = base * base;
-      break;
     case 3:
       value = base * base * base;
       break;
@@ -95,6 +92,7 @@ class Evaluator {
         return compared(expression, out);
       case Operation::power:
         decided_operand(expression, expression.exponent < 0, out);
+        if (expression.exponent == 2) return square(out);
         for (Index i = 0; i < size_; ++i) out[i] = whole_power(out[i], expression.exponent);
         return;
       case Operation::log:
@@ -145,6 +143,14 @@ class Evaluator {
     }
   }
 
+  void square(double* out) const {
+    for (Index i = 0; i < size_; ++i) {
+      const double value = out[i] * out[i];
+      const bool underflow = (value == 0) & (out[i] != 0);
+      out[i] = underflow ? tiny : value;
+    }
+  }
+
   /// The first operand; where its sign or its zero decides something and doubles cannot tell, its
   /// exact value rounded.
   void decided_operand(const Expression& expression, bool sign_matters, double* out) const {
@@ -164,8 +170,12 @@ class Evaluator {
   void compared(const Expression& expression, double* out) const {
     const Expression& left = *expression.operands[0];
     const Expression& right = *expression.operands[1];
-    if (left.operation == Operation::cell && right.operation == Operation::number) {
-      return cell_and_number(expression, out);
+    if (is_leaf(left) && is_leaf(right)) {
+      for (Index i = 0; i < size_; ++i) {
+        const int order = order_of_leaves(left, right, piece_, row(i));
+        out[i] = holds(expression.comparison, order) ? 1.0 : 0.0;
+      }
+      return;
     }
     if (is_exact(left) && is_exact(right)) {
       for (Index i = 0; i < size_; ++i) {
@@ -182,25 +192,6 @@ class Evaluator {
       const int order = a < b ? -1 : (a > b ? 1 : 0);
       out[i] =
           a != a || b != b ? undefined : static_cast<double>(holds(expression.comparison, order));
-    }
-  }
-
-  /// The bracket of most designs: doubles decide, and equal doubles go to the decimals.
-  void cell_and_number(const Expression& expression, double* out) const {
-    const table::PieceColumn& column =
-        piece_.columns[static_cast<std::size_t>(expression.operands[0]->column)];
-    const table::Number& number = expression.operands[1]->number;
-    for (Index i = 0; i < size_; ++i) {
-      const std::size_t at = row(i);
-      const double value = column.value[at];
-      int order = value < number.value ? -1 : 1;
-      if (value == number.value) {
-        const bool same = column.wide.empty() && number.wide.empty() &&
-                          column.mantissa[at] == number.mantissa &&
-                          column.decimals[at] == number.decimals;
-        order = same ? 0 : order_of_numbers(column.number(at), number);
-      }
-      out[i] = holds(expression.comparison, order) ? 1.0 : 0.0;
     }
   }
 

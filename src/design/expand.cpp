@@ -13,6 +13,13 @@ namespace {
 constexpr double smallest_magnitude = 1e-305;
 constexpr double largest_magnitude = 1e305;
 
+/// Zero or within the range; false for NaN and infinity. No branches, so that loops over rows are
+/// vectorised.
+bool is_usable(double value) {
+  const double magnitude = std::abs(value);
+  return (value == 0) | ((magnitude >= smallest_magnitude) & (magnitude <= largest_magnitude));
+}
+
 class Expansion {
  public:
   Expansion(const Design& design, const table::Schema& schema,
@@ -129,6 +136,12 @@ class Expansion {
             "--undefined exclude leaves such rows out"};
   }
 
+  [[nodiscard]] bool all_usable(const double* values) const {
+    std::uint64_t unusable = 0;
+    for (std::size_t i = 0; i < block_.rows.size(); ++i) unusable += is_usable(values[i]) ? 0 : 1;
+    return unusable == 0;
+  }
+
   Result<void> fill(std::size_t j) {
     const DesignColumn& column = design_.columns[j];
     const auto at = static_cast<Index>(j);
@@ -137,12 +150,11 @@ class Expansion {
     if (column.definition->operation == Operation::cell ||
         column.definition->operation == Operation::is_level)
       return {};
+    if (all_usable(block_.values.col(at).data())) return {};
     std::uint64_t undefined = 0;
     for (std::size_t i = 0; i < block_.rows.size(); ++i) {
       double& value = block_.values(static_cast<Index>(i), at);
-      const double magnitude = std::abs(value);
-      if (value == 0 || (magnitude >= smallest_magnitude && magnitude <= largest_magnitude))
-        continue;
+      if (is_usable(value)) continue;
       if (Result<void> done = look_closer(column, i, value); !done) return done;
       if (value == value) continue;
       if (design_.undefined == Undefined::stop)
@@ -165,9 +177,7 @@ class Expansion {
       if (exact && *exact == 0) return {};
       size = fmt::format("{}", value);
     }
-    const double magnitude = std::abs(value);
-    if (value != value || (magnitude >= smallest_magnitude && magnitude <= largest_magnitude))
-      return {};
+    if (value != value || (value != 0 && is_usable(value))) return {};
     return Error{ErrorKind::data, where(row), column.label + " is out of range: " + size,
                  "values lie between 1e-305 and 1e305 in size; change the unit"};
   }

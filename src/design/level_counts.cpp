@@ -1,7 +1,6 @@
 #include <algorithm>
 #include <unordered_map>
 
-#include "design/decide.hpp"
 #include "design/rows.hpp"
 
 namespace gramproof::design {
@@ -22,7 +21,7 @@ class NumberLevels {
     if (std::next(first) == last && column.wide.empty()) return static_cast<int>(first->second);
     const table::Number number = column.number(row);
     for (auto entry = first; entry != last; ++entry) {
-      if (order_of_numbers(facts_.levels[entry->second].value, number) == 0)
+      if (table::compare(facts_.levels[entry->second].value, number) == 0)
         return static_cast<int>(entry->second);
     }
     return -1;

@@ -69,3 +69,39 @@ TEST_CASE("two spellings of one tree have one label") {
     CHECK(a.value().columns[0].label == b.value().columns[0].label);
   }
 }
+
+TEST_CASE("runs of random tokens end in an error or in a design that pastes back") {
+  const std::vector<std::string> tokens = {
+      "age",      "income", "region",  "grade",       "north",
+      "constant", "rest",   "levels(", "all_levels(", "steps(",
+      "columns(", "\"a*\"", "column(", "log(",        "hinge(",
+      "max(",     ",",      ",",       "+",           "-",
+      "*",        "/",      "^",       "2",           "-3",
+      "0.5",      "(",      ")",       ")",           "[",
+      "]",        "=",      "<",       "!=",          "is",
+      "not",      "and",    "or",      "against",     "\"net income\"",
+      "row",      "lag(",   "#x\n",    "1e400",       "\"Bay\""};
+  const auto table = test::harbour();
+  int bound = 0;
+  for (std::uint64_t seed = 1; seed <= 30000; ++seed) {
+    CAPTURE(seed);
+    std::mt19937_64 bits(seed);
+    std::string text;
+    for (std::uint64_t i = 0, size = 1 + bits() % 9; i < size; ++i)
+      text += tokens[bits() % tokens.size()] + " ";
+    CAPTURE(text);
+    const auto design = test::bind_text(text, table.schema);
+    if (!design) {
+      CHECK_FALSE(design.error().what.empty());
+      CHECK(design.error().kind != ErrorKind::internal);
+      continue;
+    }
+    ++bound;
+    for (const auto& column : design.value().columns) {
+      const auto again = test::bind_text(column.label, table.schema);
+      REQUIRE(again);
+      CHECK(again.value().columns[0].label == column.label);
+    }
+  }
+  CHECK(bound > 500);
+}
