@@ -52,8 +52,10 @@ struct ColumnSummary {
 /// A readable basis of the space of relations spanned by `null_vectors` (on the design columns;
 /// vectors that use the ones column are not relations and must not be passed): the cheapest to read
 /// among structural relations, the saturated lattice reduced by LLL and the vectors given, then
-/// shortened in pairs. Spans the same space; cheapest first; depends on nothing but the space and
-/// the design. Beyond a budget by bits x nullity the lattice is left out.
+/// shortened in pairs. A column costs 8 and each bit of its coefficient after the first 1, so that
+/// a coefficient of three digits weighs as much as one more column. Spans the same space; cheapest
+/// first; the same vectors give the same basis. Beyond a budget by bits x nullity the lattice is
+/// left out.
 [[nodiscard]] std::vector<NullVector> readable_basis(const design::Design& design,
                                                      const table::Schema& schema,
                                                      const std::vector<NullVector>& null_vectors);

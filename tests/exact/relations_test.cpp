@@ -1,0 +1,437 @@
+#include "exact/relations.hpp"
+
+#include <doctest/doctest.h>
+
+#include <algorithm>
+
+#include "exact/matrix.hpp"
+
+using namespace gramproof;
+using exact::Cause;
+using exact::NullVector;
+using test::Matrix;
+
+namespace {
+
+using Texts = std::vector<std::string>;
+
+std::vector<exact::ColumnSummary> summaries_of(const Matrix& matrix) {
+  const auto rows = exact::exact_rows(matrix.design, matrix.piece).rows;
+  std::vector<exact::ColumnSummary> summaries(matrix.design.columns.size());
+  for (std::size_t j = 0; j < summaries.size(); ++j) {
+    for (std::size_t i = 0; i < rows.size(); ++i) {
+      // The last entry of an exact row is the factor that made it whole.
+      const double value = mpq_class(mpq_class(rows[i][j]) / mpq_class(rows[i].back())).get_d();
+      summaries[j].min = i == 0 ? value : std::min(summaries[j].min, value);
+      summaries[j].max = i == 0 ? value : std::max(summaries[j].max, value);
+      summaries[j].nonzero_rows += value != 0;
+    }
+  }
+  return summaries;
+}
+
+std::vector<exact::Relation> relations_of(const Matrix& matrix) {
+  const auto rank = exact::rank_of_sample(matrix.design, matrix.piece, matrix.order());
+  std::vector<exact::Relation> relations;
+  for (const NullVector& vector :
+       exact::readable_basis(matrix.design, matrix.schema, rank.null_vectors)) {
+    relations.push_back(exact::describe(matrix.design, matrix.schema, vector, summaries_of(matrix),
+                                        matrix.piece.rows));
+  }
+  return relations;
+}
+
+/// Adds a text column with the given level in each row.
+void add_text_column(Matrix& matrix, const std::string& name, const std::vector<int>& codes,
+                     const Texts& levels) {
+  table::PieceColumn column;
+  column.loaded = true;
+  column.kind = table::ColumnKind::text;
+  column.missing.assign(codes.size(), 0);
+  column.code.assign(codes.begin(), codes.end());
+  matrix.piece.columns.push_back(std::move(column));
+  table::ColumnFacts facts;
+  facts.name = name;
+  facts.kind = table::ColumnKind::text;
+  for (const std::string& level : levels) {
+    facts.levels.emplace_back();
+    facts.levels.back().text = level;
+  }
+  matrix.schema.columns.push_back(std::move(facts));
+}
+
+design::ExpressionPtr bracket(int column, int level) {
+  design::Expression expression;
+  expression.operation = design::Operation::is_level;
+  expression.column = column;
+  expression.level = level;
+  return std::make_shared<design::Expression>(expression);
+}
+
+/// all_levels(name), or all_levels(name) * factor.
+void add_all_levels(Matrix& matrix, const std::string& name, int factor = -1) {
+  int column = 0;
+  while (matrix.schema.columns[static_cast<std::size_t>(column)].name != name) ++column;
+  const auto set = static_cast<int>(matrix.design.level_sets.size());
+  matrix.design.level_sets.push_back({column, false, -1, {}});
+  const auto& levels = matrix.schema.columns[static_cast<std::size_t>(column)].levels;
+  const auto term = static_cast<int>(matrix.design.columns.size());
+  for (std::size_t i = 0; i < levels.size(); ++i) {
+    const auto level = static_cast<int>(i);
+    std::string label = "[" + name + " = " + levels[i].text + "]";
+    design::ExpressionPtr definition = bracket(column, level);
+    std::vector<design::LevelUse> uses = {{set, level}};
+    if (factor >= 0) {
+      const design::DesignColumn& other = matrix.design.columns[static_cast<std::size_t>(factor)];
+      label += " * " + other.label;
+      definition = test::tree(design::Operation::multiply, {definition, other.definition});
+      uses.insert(uses.end(), other.levels.begin(), other.levels.end());
+    }
+    test::add_column(matrix, label, definition);
+    matrix.design.columns.back().levels = uses;
+    matrix.design.columns.back().term = term;
+  }
+}
+
+/// 12 rows of a constant, an age and two text columns; regions lie in zones.
+Matrix regions() {
+  std::vector<Texts> cells;
+  for (int i = 0; i < 12; ++i) cells.push_back({"1", std::to_string(20 + i * i % 37)});
+  Matrix matrix = test::matrix_of({"constant", "age"}, cells);
+  add_text_column(matrix, "region", {0, 1, 2, 3, 0, 1, 2, 3, 0, 1, 2, 3},
+                  {"north", "south", "east", "west"});
+  add_text_column(matrix, "zone", {0, 0, 1, 1, 0, 0, 1, 1, 0, 0, 1, 1}, {"a", "b"});
+  add_text_column(matrix, "shift", {0, 1, 0, 1, 1, 0, 1, 0, 0, 1, 1, 1}, {"day", "night"});
+  return matrix;
+}
+
+bool has(const std::vector<exact::Relation>& relations, const std::string& text, Cause cause) {
+  return std::any_of(relations.begin(), relations.end(),
+                     [&](const exact::Relation& r) { return r.text == text && r.cause == cause; });
+}
+
+std::string all_texts(const std::vector<exact::Relation>& relations) {
+  std::string text;
+  for (const exact::Relation& r : relations) {
+    text += r.text + " [" + exact::word_of(r.cause) + "] " + r.cause_text + "\n";
+  }
+  return text;
+}
+
+}  // namespace
+
+TEST_CASE("equations as a person writes them") {
+  struct Case {
+    std::string why;
+    Texts names;
+    Texts vector;
+    std::string text;
+  };
+  const Texts abc = {"a", "b", "constant"};
+  const std::vector<Case> cases = {
+      {"sum",
+       {"heat", "light", "cooking", "total"},
+       {"1", "1", "1", "-1", "0"},
+       "heat + light + cooking = total"},
+      {"the total first in the design",
+       {"total", "heat", "light"},
+       {"1", "-1", "-1", "0"},
+       "heat + light = total"},
+      {"a constant between",
+       {"celsius", "constant", "fahrenheit"},
+       {"9", "160", "-5", "0"},
+       "9\u00b7celsius + 160 = 5\u00b7fahrenheit"},
+      {"a negative constant",
+       {"kelvin", "constant", "celsius"},
+       {"20", "-5463", "-20", "0"},
+       "celsius + 273.15 = kelvin"},
+      {"hand-coded levels",
+       {"constant", "district_north", "district_south"},
+       {"1", "-1", "-1", "0"},
+       "district_north + district_south = 1"},
+      {"zero", {"gone"}, {"1", "0"}, "gone = 0"},
+      {"one value", {"constant", "seven"}, {"7", "-1", "0"}, "seven = 7"},
+      {"one negative value", {"constant", "x"}, {"7", "1", "0"}, "x = \u22127"},
+      {"one broken value", {"constant", "x"}, {"7", "-2", "0"}, "x = 3.5"},
+      {"one value that is no decimal", {"constant", "x"}, {"7", "-3", "0"}, "x = 7/3"},
+      {"the ones column where there is no constant", {"x"}, {"1", "-4"}, "x = 4"},
+      {"duplicate", abc, {"1", "-1", "0", "0"}, "a = b"},
+      {"multiple", abc, {"12", "-1", "0", "0"}, "12\u00b7a = b"},
+      {"multiple the other way", abc, {"1", "-12", "0", "0"}, "12\u00b7b = a"},
+      {"no side is free of a factor", abc, {"381", "-1250", "0", "0"}, "381\u00b7a = 1250\u00b7b"},
+      {"nothing to the right", abc, {"1", "2", "0", "0"}, "a + 2\u00b7b = 0"},
+      {"fixed sum", abc, {"1", "1", "-100", "0"}, "a + b = 100"},
+      {"fixed sum that is a decimal", abc, {"2", "2", "-1", "0"}, "a + b = 0.5"},
+      {"fixed sum that is none", abc, {"3", "3", "-1", "0"}, "3\u00b7a + 3\u00b7b = 1"},
+      {"negative fixed sum", abc, {"1", "1", "3", "0"}, "a + b = \u22123"},
+      {"offset", abc, {"1", "-1", "7", "0"}, "a + 7 = b"},
+      {"powers of ten", abc, {"1000000000", "-1", "0", "0"}, "10^9\u00b7a = b"},
+      {"many zeros", abc, {"40000000", "-1", "0", "0"}, "4\u00b710^7\u00b7a = b"},
+      {"few zeros stay", abc, {"1000000", "-1", "0", "0"}, "1000000\u00b7a = b"},
+      {"period, age, birth",
+       {"birth_year", "interview_year", "age"},
+       {"1", "-1", "1", "0"},
+       "birth_year + age = interview_year"},
+  };
+  for (const Case& c : cases) {
+    CAPTURE(c.why);
+    const Matrix matrix = test::matrix_of(c.names, {});
+    NullVector vector;
+    for (const std::string& v : c.vector) vector.emplace_back(v);
+    CHECK(exact::equation(matrix.design, vector) == c.text);
+    for (auto& v : vector) v = -v;
+    CHECK_MESSAGE(exact::equation(matrix.design, vector).size() == c.text.size(),
+                  "the sign of the vector is no matter");
+  }
+}
+
+TEST_CASE("labels that are sums or products stand in parentheses") {
+  Matrix matrix = test::matrix_of({"a", "b"}, {});
+  test::add_column(matrix, "a + b",
+                   test::tree(design::Operation::add, {test::cell(0), test::cell(1)}));
+  test::add_column(matrix, "a * b",
+                   test::tree(design::Operation::multiply, {test::cell(0), test::cell(1)}));
+  CHECK(exact::equation(matrix.design, {1, 1, -1, 0, 0}) == "a + b = (a + b)");
+  CHECK(exact::equation(matrix.design, {1, 1, 0, -1, 0}) == "a + b = a * b");
+  CHECK(exact::equation(matrix.design, {1, 1, 0, -3, 0}) == "a + b = 3\u00b7(a * b)");
+}
+
+TEST_CASE("long relations are cut") {
+  Texts names;
+  for (int i = 1; i <= 13; ++i) names.push_back("p" + std::to_string(i));
+  names.push_back("total");
+  NullVector vector(15, 1);
+  vector[13] = -1;
+  vector[14] = 0;
+  CHECK(exact::equation(test::matrix_of(names, {}).design, vector) ==
+        "p1 + p2 + p3 + p4 + p5 + p6 + \u2026 (6 more) + p13 = total");
+  names.erase(names.begin(), names.begin() + 2);
+  vector.erase(vector.begin(), vector.begin() + 2);
+  CHECK(exact::equation(test::matrix_of(names, {}).design, vector) ==
+        "p3 + p4 + p5 + p6 + p7 + p8 + p9 + p10 + p11 + p12 + p13 = total");
+}
+
+TEST_CASE("causes of relations among plain columns") {
+  struct Case {
+    std::string why;
+    Texts names;
+    std::vector<Texts> rows;
+    std::string text;
+    Cause cause;
+    std::string says;  ///< part of the sentence
+  };
+  const std::vector<Case> cases = {
+      {"zero",
+       {"a", "b"},
+       {{"1", "0"}, {"2", "0"}, {"5", "0"}},
+       "b = 0",
+       Cause::zero_column,
+       "b is 0 in all 3 rows used."},
+      {"one value",
+       {"constant", "a"},
+       {{"1", "2.5"}, {"1", "2.5"}},
+       "a = 2.5",
+       Cause::constant_column,
+       "a is 2.5 in all 2 rows used"},
+      {"duplicate",
+       {"a", "b"},
+       {{"1", "1.0"}, {"2", "2"}, {"7", "7"}},
+       "a = b",
+       Cause::duplicate,
+       "a and b are equal in all 3 rows used"},
+      {"dozens",
+       {"eggs", "dozens"},
+       {{"12", "1"}, {"36", "3"}, {"24", "2"}},
+       "12\u00b7dozens = eggs",
+       Cause::multiple,
+       "eggs is 12 times dozens"},
+      {"sign",
+       {"a", "b"},
+       {{"1", "-1"}, {"2", "-2"}, {"7", "-7"}},
+       "a + b = 0",
+       Cause::multiple,
+       "b is minus a"},
+      {"feet",
+       {"feet", "metres"},
+       {{"10", "3.048"}, {"5", "1.524"}, {"1", "0.3048"}},
+       "381\u00b7feet = 1250\u00b7metres",
+       Cause::unit_conversion,
+       "metres is 0.3048 times feet"},
+      {"fahrenheit",
+       {"constant", "c", "f"},
+       {{"1", "0", "32"}, {"1", "100", "212"}, {"1", "37", "98.6"}, {"1", "1", "33.8"}},
+       "9\u00b7c + 160 = 5\u00b7f",
+       Cause::unit_conversion,
+       "f is 1.8 times c plus 32"},
+      {"male and female",
+       {"constant", "male", "female"},
+       {{"1", "1", "0"}, {"1", "0", "1"}, {"1", "0", "1"}},
+       "male + female = 1",
+       Cause::level_set,
+       "Exactly one of male and female is 1"},
+      {"shares",
+       {"constant", "s1", "s2", "s3"},
+       {{"1", "20.5", "30", "49.5"},
+        {"1", "1", "2", "97"},
+        {"1", "50", "40", "10"},
+        {"1", "10", "20.1", "69.9"},
+        {"1", "3", "3", "94"}},
+       "s1 + s2 + s3 = 100",
+       Cause::fixed_sum,
+       "s1, s2 and s3 add up to 100"},
+      {"two shares",
+       {"constant", "s1", "s2"},
+       {{"1", "20.5", "79.5"}, {"1", "1", "99"}, {"1", "50", "50"}},
+       "s1 + s2 = 100",
+       Cause::fixed_sum,
+       "add up to 100"},
+      {"parts",
+       {"total", "heat", "light"},
+       {{"3", "1", "2"}, {"0.30", "0.1", "0.2"}, {"7", "7", "0"}},
+       "heat + light = total",
+       Cause::parts_and_total,
+       "total is the sum of heat and light"},
+      {"a difference of signed columns",
+       {"p", "q", "d"},
+       {{"3", "1", "2"}, {"1", "3", "-2"}, {"5", "-1", "6"}},
+       "q + d = p",
+       Cause::other,
+       "p follows from the others"},
+      {"years by value",
+       {"p", "b", "years"},
+       {{"2001", "1970", "31"}, {"1999", "1950", "49"}, {"2010", "1990", "20"}},
+       "b + years = p",
+       Cause::clock_identity,
+       "Time is counted three ways, in b, years and p"},
+      {"years by name",
+       {"age", "period", "cohort"},
+       {{"3", "5", "2"}, {"1", "6", "5"}, {"2", "9", "7"}},
+       "age + cohort = period",
+       Cause::clock_identity,
+       "any two of them give the third"},
+      {"wage is no age",
+       {"wage", "bonus", "pay"},
+       {{"3", "2", "5"}, {"1", "5", "6"}, {"2", "7", "9"}},
+       "wage + bonus = pay",
+       Cause::parts_and_total,
+       "pay is the sum of wage and bonus"},
+      {"odd factors",
+       {"a", "b", "d"},
+       {{"12", "0", "7"}, {"0", "4", "-1461"}, {"24", "8", "-2908"}, {"1200", "4", "-761"}},
+       "4383\u00b7b + 12\u00b7d = 7\u00b7a",
+       Cause::other,
+       "Any one of these columns"},
+      {"one row",
+       {"a", "b"},
+       {{"2", "3"}},
+       "3\u00b7a = 2\u00b7b",
+       Cause::too_few_rows,
+       "Only 1 row is used: any 2 columns"},
+      {"affine through two points",
+       {"constant", "a", "b"},
+       {{"1", "1", "5"}, {"1", "2", "9"}},
+       "4\u00b7a + 1 = b",
+       Cause::too_few_rows,
+       "Only 2 rows are used: any 3 columns"},
+  };
+  for (const Case& c : cases) {
+    CAPTURE(c.why);
+    const auto relations = relations_of(test::matrix_of(c.names, c.rows));
+    CAPTURE(all_texts(relations));
+    REQUIRE(relations.size() == 1);
+    CHECK(relations[0].text == c.text);
+    CHECK(exact::word_of(relations[0].cause) == exact::word_of(c.cause));
+    CHECK(relations[0].cause_text.find(c.says) != std::string::npos);
+    for (std::size_t j = 0; j < c.names.size(); ++j) {
+      const auto& removable = relations[0].removable;
+      const bool listed =
+          std::find(removable.begin(), removable.end(), static_cast<int>(j)) != removable.end();
+      CHECK(listed == (relations[0].coefficients[j] != 0));
+    }
+  }
+}
+
+TEST_CASE("levels: a full set, two of them, one inside another") {
+  Matrix matrix = regions();
+  add_all_levels(matrix, "region");
+  auto relations = relations_of(matrix);
+  REQUIRE(relations.size() == 1);
+  CHECK(relations[0].text ==
+        "[region = north] + [region = south] + [region = east] + [region = west] = constant");
+  CHECK(relations[0].cause == Cause::level_set);
+  CHECK(
+      relations[0].cause_text ==
+      "Each row used has exactly one level of region, so the 4 columns made from its levels add up "
+      "to the constant.");
+
+  add_all_levels(matrix, "zone");
+  relations = relations_of(matrix);
+  CAPTURE(all_texts(relations));
+  REQUIRE(relations.size() == 3);
+  CHECK(has(relations, "[zone = a] + [zone = b] = constant", Cause::level_set));
+  CHECK(has(relations, "[region = north] + [region = south] = [zone = a]", Cause::nested_levels));
+  CHECK(has(relations, "[region = east] + [region = west] = [zone = b]", Cause::nested_levels));
+}
+
+TEST_CASE("two full sets without a constant add up to each other") {
+  Matrix matrix = regions();
+  matrix.design.columns.clear();
+  add_all_levels(matrix, "region");
+  add_all_levels(matrix, "shift");
+  const auto relations = relations_of(matrix);
+  CAPTURE(all_texts(relations));
+  REQUIRE(relations.size() == 1);
+  CHECK(relations[0].cause == Cause::level_set);
+  CHECK(relations[0].text ==
+        "[region = north] + [region = south] + [region = east] + [region = west] = [shift = day] + "
+        "[shift = night]");
+  CHECK(relations[0].cause_text.find("the levels of region") != std::string::npos);
+}
+
+TEST_CASE("products of a full set with a column add up to the column; empty cells are named") {
+  Matrix matrix = regions();
+  add_all_levels(matrix, "zone", 1);
+  auto relations = relations_of(matrix);
+  REQUIRE(relations.size() == 1);
+  CHECK(relations[0].text == "[zone = a] * age + [zone = b] * age = age");
+  CHECK(relations[0].cause == Cause::level_set);
+  CHECK(relations[0].cause_text.find("level of zone") != std::string::npos);
+
+  Matrix crossed = regions();
+  add_all_levels(crossed, "zone");
+  add_all_levels(crossed, "region", 2);  // with [zone = a]
+  relations = relations_of(crossed);
+  CAPTURE(all_texts(relations));
+  CHECK(has(relations, "[region = east] * [zone = a] = 0", Cause::empty_cell));
+  CHECK(has(relations, "[region = west] * [zone = a] = 0", Cause::empty_cell));
+  CHECK(has(relations, "[zone = a] + [zone = b] = constant", Cause::level_set));
+}
+
+TEST_CASE("hand-coded indicators far apart and totals that share parts are found") {
+  std::vector<Texts> cells;
+  test::Random random(5);
+  for (int i = 0; i < 60; ++i) {
+    const auto level = random.whole(0, 2);
+    const auto a = random.whole(0, 99), b = random.whole(0, 99), c = random.whole(0, 99);
+    const auto text = [](std::int64_t v) { return std::to_string(v); };
+    cells.push_back({"1", text(level == 0), text(a), text(level == 1), text(b), text(level == 2),
+                     text(c), text(a + b), text(a + b + c)});
+  }
+  const auto relations = relations_of(test::matrix_of(
+      {"constant", "work_none", "a", "work_part", "b", "work_full", "c", "ab", "abc"}, cells));
+  CAPTURE(all_texts(relations));
+  REQUIRE(relations.size() == 3);
+  CHECK(has(relations, "work_none + work_part + work_full = 1", Cause::level_set));
+  CHECK(has(relations, "a + b = ab", Cause::parts_and_total));
+  CHECK(has(relations, "c + ab = abc", Cause::parts_and_total));
+}
+
+TEST_CASE("words of causes are those of the document") {
+  const Texts words = {
+      "zero_column",    "constant_column", "duplicate",  "multiple",        "unit_conversion",
+      "level_set",      "nested_levels",   "empty_cell", "parts_and_total", "fixed_sum",
+      "clock_identity", "too_few_rows",    "other"};
+  for (std::size_t i = 0; i < words.size(); ++i) {
+    CHECK(exact::word_of(static_cast<Cause>(i)) == words[i]);
+  }
+}
