@@ -76,12 +76,9 @@ std::string figure(double value, double known_digits) {
   return rounded(value, digits_to_print(known_digits));
 }
 
-std::string size_or_bound(double value, double known_digits, double least) {
+std::string size_or_bound(double value, double known_digits, double largest) {
   if (std::isfinite(value) && known_digits >= 1) return figure(value, known_digits);
-  double bound = least;
-  if (std::isfinite(value) && std::isfinite(known_digits)) {
-    bound = value / (1 + std::pow(10, -known_digits));
-  }
+  const double bound = std::isfinite(value) && value > 0 ? 1 / (1 / value + 1 / largest) : largest;
   if (!(bound > 0) || !std::isfinite(bound)) return not_known;
   // A bound is rounded down to one digit. The factor keeps 2·10^12 from becoming 1·10^12 by the
   // rounding of the logarithm and the division.

@@ -19,10 +19,9 @@ inline constexpr int most_digits = 4;
 [[nodiscard]] std::string figure(double value, double known_digits);
 
 /// A positive size: figure(), or when not one digit is known "not known in double precision: at
-/// least 2·10^12". The bound follows from the error bound that `known_digits` states: the
-/// reciprocal of the size is wrong by at most 10^-known_digits of itself. `least`: the bound when
-/// the size is not finite.
-[[nodiscard]] std::string size_or_bound(double value, double known_digits, double least);
+/// least 40 trillion". `largest`: the largest size that can be told at all; the reciprocal of the
+/// size is wrong by at most 1/largest, so the size is at least 1 / (1/value + 1/largest).
+[[nodiscard]] std::string size_or_bound(double value, double known_digits, double largest);
 
 /// A share between 0 and 1: "4.1%", below a thousandth "1 part in 32,000".
 [[nodiscard]] std::string share(double value, double known_digits);

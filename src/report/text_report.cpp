@@ -46,7 +46,8 @@ double largest_known_condition(const audit::Audit& audit) {
 
 double known_digits_of_index(const audit::Audit& audit, double index) {
   const audit::Conditioning& conditioning = audit.conditioning;
-  if (!std::isfinite(conditioning.condition_number) || !std::isfinite(conditioning.known_digits)) {
+  // Where not one digit holds, known_digits stops at 0 and no longer states the error.
+  if (!std::isfinite(conditioning.condition_number) || !(conditioning.known_digits > 0)) {
     return std::log10(largest_known_condition(audit) / index);
   }
   return conditioning.known_digits + std::log10(conditioning.condition_number / index);

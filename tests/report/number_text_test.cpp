@@ -74,8 +74,12 @@ TEST_CASE("a figure never has more significant digits than are known, and rounds
 }
 
 TEST_CASE("a size without a known digit is bounded from below") {
-  // The reciprocal is wrong by 10^1.8 of itself: the size is at least 3.1e15 / 64.1 = 4.8e13.
-  CHECK(size_or_bound(3.1e15, -1.8, 1e12) == "not known in double precision: at least 40 trillion");
+  // The reciprocal is wrong by at most 1/4.7e13: the size is at least 1 / (1/3.1e15 + 1/4.7e13)
+  // = 4.63e13.
+  CHECK(size_or_bound(3.1e15, -1.8, 4.7e13) ==
+        "not known in double precision: at least 40 trillion");
+  // A computed size of the order of the limit says less: 1 / (1/2e12 + 1/2e12) = 1e12.
+  CHECK(size_or_bound(2e12, 0, 2e12) == "not known in double precision: at least 1 trillion");
   CHECK(size_or_bound(std::numeric_limits<double>::infinity(), -5, 2e12) ==
         "not known in double precision: at least 2 trillion");
   CHECK(size_or_bound(41.2345, 9, 1e12) == "41.23");
