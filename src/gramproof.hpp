@@ -4,6 +4,10 @@
 // (base/result.hpp).
 #pragma once
 
+#include "audit/run.hpp"
 #include "base/numeric.hpp"
 #include "base/result.hpp"
+#include "report/document.hpp"
+#include "report/text_report.hpp"
 #include "table/source.hpp"
+#include "table/survey.hpp"
