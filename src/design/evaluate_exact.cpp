@@ -22,12 +22,6 @@ mpq_class rational(const mpz_class& mantissa, std::int32_t decimals) {
   return value;
 }
 
-mpq_class value_of(const table::Number& number) {
-  const mpz_class mantissa =
-      number.wide.empty() ? mpz_class(static_cast<long>(number.mantissa)) : mpz_class(number.wide);
-  return rational(mantissa, number.decimals);
-}
-
 Value power_of(const mpq_class& base, int exponent) {
   if (exponent < 0 && base == 0) return std::nullopt;
   mpz_class above, below;
@@ -98,6 +92,12 @@ Value text_holds(const Expression& expression, const table::Piece& piece, std::s
 
 }  // namespace
 
+mpq_class exact_number(const table::Number& number) {
+  const mpz_class mantissa =
+      number.wide.empty() ? mpz_class(static_cast<long>(number.mantissa)) : mpz_class(number.wide);
+  return rational(mantissa, number.decimals);
+}
+
 std::optional<mpq_class> exact_value(const Expression& expression, const table::Piece& piece,
                                      std::size_t row) {
   switch (expression.operation) {
@@ -105,10 +105,10 @@ std::optional<mpq_class> exact_value(const Expression& expression, const table::
       const table::PieceColumn& column = piece.columns[static_cast<std::size_t>(expression.column)];
       if (column.wide.empty())
         return rational(mpz_class(static_cast<long>(column.mantissa[row])), column.decimals[row]);
-      return value_of(column.number(row));
+      return exact_number(column.number(row));
     }
     case Operation::number:
-      return value_of(expression.number);
+      return exact_number(expression.number);
     case Operation::row_number:
       return mpq_class(static_cast<unsigned long>(piece.row[row]));
     case Operation::power: {

@@ -193,3 +193,18 @@ TEST_CASE("an undefined part makes the whole undefined") {
     for (const std::size_t row : {0u, 1u}) CHECK(std::isnan(value_of(text, table, row)));
   }
 }
+
+TEST_CASE("exact numbers") {
+  const std::vector<std::pair<std::string, std::string>> numbers = {
+      {"12.40", "62/5"},
+      {"-0.5", "-1/2"},
+      {"1e3", "1000"},
+      {"0.00", "0"},
+      {"123456789012345678901234567890.5", "246913578024691357802469135781/2"}};
+  for (const auto& [text, fraction] : numbers) {
+    CAPTURE(text);
+    table::Number number;
+    REQUIRE(table::parse_number(text, '.', number) == table::NumberStatus::number);
+    CHECK(design::exact_number(number) == mpq_class(fraction));
+  }
+}
