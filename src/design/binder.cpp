@@ -89,15 +89,17 @@ bool Binder::has_listed_levels(int column, std::size_t at) {
 int Binder::level(int column, const Word& word) {
   if (!has_listed_levels(column, word.at)) return -1;
   const table::ColumnFacts& known = facts(column);
+  if (known.kind == table::ColumnKind::text) {
+    const auto found = known.code_of.find(word.text);
+    if (found != known.code_of.end()) return found->second;
+  }
   table::Number number;
-  const bool numeric = known.kind == table::ColumnKind::numeric;
-  const bool is_number = table::parse_number(word.text, '.', number) == table::NumberStatus::number;
+  const bool can_match = known.kind == table::ColumnKind::numeric &&
+                         table::parse_number(word.text, '.', number) == table::NumberStatus::number;
   std::vector<std::string> texts;
   for (std::size_t i = 0; i < known.levels.size(); ++i) {
     const table::Level& level = known.levels[i];
-    const bool same =
-        numeric ? is_number && table::compare(level.value, number) == 0 : level.text == word.text;
-    if (same) return static_cast<int>(i);
+    if (can_match && table::compare(level.value, number) == 0) return static_cast<int>(i);
     texts.push_back(level.text);
   }
   fail(word.at, "no level " + in_quotes(word.text) + " in column " + in_quotes(known.name),

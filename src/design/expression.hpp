@@ -62,11 +62,11 @@ struct Expression {
 /// True if no log, sqrt, exp or asinh occurs: the value is then a rational function of the cells' decimals.
 [[nodiscard]] bool is_exact(const Expression& expression);
 
-/// True if the value is 0 or 1 by construction: comparisons, levels, logic, and products of such.
+/// True if the value is 0 or 1 by construction: brackets, their products, powers, minima; sums over different levels of a column.
 [[nodiscard]] bool is_zero_one(const Expression& expression);
 
 /// The partial derivative with respect to the cell of one table column, almost everywhere: brackets give 0, |x| gives the sign,
-/// min and max the derivative of the operand that is chosen, as a tree again; null where it is identically zero.
+/// min and max that of the operand chosen (the first in a tie), sqrt 0 at 0; a tree again, null where it is identically zero.
 [[nodiscard]] ExpressionPtr derivative(const ExpressionPtr& expression, int column);
 
 /// Canonical text of the tree with the names of `schema`; parses back to the same tree.

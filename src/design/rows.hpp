@@ -20,7 +20,7 @@ namespace gramproof::design {
 struct Exclusion {
   enum class Reason : std::uint8_t { filter, missing, undefined, weight_zero };
   Reason reason = Reason::missing;
-  int column = -1;         ///< missing: table column; undefined: design column; else -1
+  int column = -1;         ///< missing: table column; undefined: design column, -1 for --rows; else -1
   std::uint64_t rows = 0;
 };
 

@@ -266,3 +266,17 @@ TEST_CASE("columns are counted before they are made") {
   CHECK(overflow.error().what ==
         "with this term the design has more than 2^64 columns; the memory is enough for 500");
 }
+
+TEST_CASE("a number out of range stops a design that needs it") {
+  const auto table = test::make_table({"x", "y"}, {{"1", "2"}, {"1e400", "3"}});
+  CHECK(test::bind_text("constant, y", table.schema));
+  for (const std::string text : {"x^2", "constant, rest", "[x > 1]", "columns(\"*\")"}) {
+    CAPTURE(text);
+    const auto design = test::bind_text(text, table.schema);
+    REQUIRE_FALSE(design);
+    CHECK(to_line(design.error()) ==
+          "table.csv:3:1: the number \"1e400\" in column \"x\" is out of range (numbers lie "
+          "between 1e-305 and "
+          "1e305 in size)");
+  }
+}
