@@ -44,18 +44,21 @@ struct State {
   void measure(Index column) { lengths[column] = work.col(column).stableNorm(); }
 };
 
-/// Makes columns p < q orthogonal and puts the longer one first; false if they were.
+/// Makes columns p < q orthogonal and puts the longer one first; false if both were so already. An
+/// exchange counts: the rest of the sweep then meets other pairs than those it set out for, and a
+/// sweep that only exchanged has not seen all.
 bool turn_pair(State& state, Index p, Index q, double tolerance) {
-  if (state.lengths[q] > state.lengths[p]) {
+  const bool exchange = state.lengths[q] > state.lengths[p];
+  if (exchange) {
     state.work.col(p).swap(state.work.col(q));
     state.right.col(p).swap(state.right.col(q));
     std::swap(state.lengths[p], state.lengths[q]);
   }
   const double longer = state.lengths[p];
   const double shorter = state.lengths[q];
-  if (shorter == 0) return false;
+  if (shorter == 0) return exchange;
   const double correlation = (state.work.col(p) / longer).dot(state.work.col(q) / shorter);
-  if (!(std::abs(correlation) > tolerance)) return false;
+  if (!(std::abs(correlation) > tolerance)) return exchange;
   if (shorter < far_apart * longer) {
     // (p / longer) times its share: sine itself may be too small for a double.
     state.work.col(q) -= (correlation * shorter) * (state.work.col(p) / longer);
@@ -70,7 +73,7 @@ bool turn_pair(State& state, Index p, Index q, double tolerance) {
   return true;
 }
 
-/// One pass over all pairs; true if some pair was turned.
+/// One pass over all pairs; true if some pair was turned or exchanged.
 bool sweep(State& state, double tolerance) {
   bool turned = false;
   for (Index p = 0; p + 1 < state.work.cols(); ++p) {
