@@ -61,35 +61,45 @@ FixedColumn same_everywhere(std::int64_t mantissa, std::int32_t decimals, std::s
           std::abs(mantissa)};
 }
 
-Fixed cells(const table::PieceColumn& column, const Rows& rows) {
-  if (column.kind != table::ColumnKind::numeric) return std::nullopt;
-  FixedColumn result;
-  result.mantissa.resize(rows.size());
-  bool any = false, mixed = false;
-  std::int32_t most = 0;
+/// Brings mantissas with differing decimals to the most that a cell other than 0 has.
+bool even_out(const table::PieceColumn& column, const Rows& rows, FixedColumn& result) {
+  bool any = false;
   for (std::size_t i = 0; i < rows.size(); ++i) {
-    const std::int64_t m = column.mantissa[rows[i]];
-    const std::int32_t d = column.decimals[rows[i]];
-    result.mantissa[i] = m;
-    if (m == 0) continue;
-    mixed = mixed || (any && d != most);
-    most = any ? std::max(most, d) : d;
+    if (result.mantissa[i] == 0) continue;
+    const std::int32_t decimals = column.decimals[rows[i]];
+    result.decimals = any ? std::max(result.decimals, decimals) : decimals;
     any = true;
   }
+  for (std::size_t i = 0; i < rows.size(); ++i) {
+    std::int64_t& m = result.mantissa[i];
+    const std::int32_t shift = result.decimals - column.decimals[rows[i]];
+    if (m == 0 || shift == 0) continue;
+    if (shift > 18) return false;
+    const std::int64_t factor = powers_of_ten[static_cast<std::size_t>(shift)];
+    if (!fits(std::abs(m), factor)) return false;
+    m *= factor;
+  }
+  return true;
+}
+
+Fixed cells(const table::PieceColumn& column, const Rows& rows) {
+  if (column.kind != table::ColumnKind::numeric) return std::nullopt;
   for (const table::WideCell& wide : column.wide) {
     if (std::find(rows.begin(), rows.end(), wide.row) != rows.end()) return std::nullopt;
   }
-  result.decimals = most;
-  if (mixed) {
-    for (std::size_t i = 0; i < rows.size(); ++i) {
-      const std::int32_t shift = most - column.decimals[rows[i]];
-      std::int64_t& m = result.mantissa[i];
-      if (m == 0 || shift == 0) continue;
-      if (shift > 18) return std::nullopt;
-      const std::int64_t factor = powers_of_ten[static_cast<std::size_t>(shift)];
-      if (!fits(std::abs(m), factor)) return std::nullopt;
-      m *= factor;
-    }
+  FixedColumn result;
+  result.mantissa.resize(rows.size());
+  if (rows.empty()) return result;
+  const std::int16_t first = column.decimals[rows.front()];
+  int differing = 0;
+  for (std::size_t i = 0; i < rows.size(); ++i) {
+    result.mantissa[i] = column.mantissa[rows[i]];
+    differing |= column.decimals[rows[i]] ^ first;
+  }
+  result.decimals = first;
+  if (differing != 0) {
+    result.decimals = 0;
+    if (!even_out(column, rows, result)) return std::nullopt;
   }
   result.largest = largest_of(result.mantissa);
   if (result.largest >= limit) return std::nullopt;

@@ -30,8 +30,7 @@ std::uint64_t prime_below(std::uint64_t prime) {
   return prime;
 }
 
-std::uint64_t DotProduct::residue(const Modulus& modulus) {
-  flush();
+std::uint64_t DotProduct::residue(const Modulus& modulus) const {
   // 2^64 is reduced to its residue first, so that every product below is of two residues.
   const std::uint64_t word = modulus.of(static_cast<__int128>(1) << 64);
   const std::uint64_t low = static_cast<std::uint64_t>(low_ % modulus.value());

@@ -12,7 +12,7 @@
 namespace gramproof::exact {
 
 /// Residues are in 0 .. value - 1. The prime must lie between 2^61 and 2^62: then signed words
-/// below 2^61 need one correction only, and sixteen products of residues fit in 128 bits.
+/// below 2^61 need one correction only.
 class Modulus {
  public:
   explicit Modulus(std::uint64_t prime);
@@ -55,24 +55,19 @@ class Modulus {
 /// 2^62.
 [[nodiscard]] std::uint64_t prime_below(std::uint64_t prime);
 
-/// Sum of products of residues, reduced only every sixteen terms: about 1 ns a term.
+/// Sum of products of residues, reduced at the end only: the two words of each product are summed
+/// apart, so that 2^64 terms cannot overflow. About 1 ns a term.
 class DotProduct {
  public:
   void add(std::uint64_t a, std::uint64_t b) {
-    group_ += static_cast<unsigned __int128>(a) * b;
-    if (++terms_ == 16) flush();
+    const unsigned __int128 product = static_cast<unsigned __int128>(a) * b;
+    low_ += static_cast<std::uint64_t>(product);
+    high_ += static_cast<std::uint64_t>(product >> 64);
   }
-  [[nodiscard]] std::uint64_t residue(const Modulus& modulus);
+  [[nodiscard]] std::uint64_t residue(const Modulus& modulus) const;
 
  private:
-  void flush() {
-    low_ += static_cast<std::uint64_t>(group_);
-    high_ += static_cast<std::uint64_t>(group_ >> 64);
-    group_ = 0;
-    terms_ = 0;
-  }
-  unsigned __int128 group_ = 0, low_ = 0, high_ = 0;
-  int terms_ = 0;
+  unsigned __int128 low_ = 0, high_ = 0;
 };
 
 }  // namespace gramproof::exact

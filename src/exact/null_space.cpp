@@ -119,8 +119,7 @@ bool NullSpace::affordable() const {
   for (const NullVector& vector : basis_) {
     for (const Integer& v : vector) bits = std::max(bits, mpz_sizeinbase(v.get_mpz_t(), 2));
   }
-  return basis_.size() <= 200 && bits * basis_.size() <= 20'000 &&
-         basis_.size() * basis_.size() * involved_.size() <= 10'000'000;
+  return basis_.size() * basis_.size() * bits <= 200'000;
 }
 
 std::vector<NullVector> NullSpace::reduced_lattice() const {

@@ -32,10 +32,10 @@ class NullSpace {
   [[nodiscard]] std::vector<std::array<std::uint64_t, 3>> fingerprints(
       const Modulus& modulus) const;
 
-  /// All integer vectors of the space, as a basis reduced by LLL. Needs O(nullity^4 * bits) and
-  /// more: see affordable().
+  /// All integer vectors of the space, as a basis reduced by LLL. Only if affordable().
   [[nodiscard]] std::vector<NullVector> reduced_lattice() const;
-  /// Budget for reduced_lattice, by bits x nullity: a second or so.
+  /// Budget for reduced_lattice: nullity^2 x bits of the largest entry up to 200,000, which takes
+  /// under a second (measured: 0.6 s at nullity 40 with 102 bits, 14 s at 95 with 52).
   [[nodiscard]] bool affordable() const;
 
  private:

@@ -12,9 +12,6 @@
 namespace gramproof::exact {
 namespace {
 
-/// Beyond this many relations pairwise shortening is left out: it looks at every pair.
-constexpr std::size_t most_for_shortening = 64;
-
 /// How hard a relation is to read: each column counts 8, each further bit of its coefficient 1, so
 /// that a coefficient of three digits weighs as much as one more column.
 struct Cost {
@@ -109,8 +106,12 @@ std::vector<NullVector> cheapest_basis(const NullSpace& space, std::vector<NullV
   return basis.size() == space.basis().size() ? basis : space.basis();
 }
 
+/// Big-integer products that pairwise shortening may spend, counted in machine words: a second or
+/// less. Counted, not timed, so that the same vectors give the same basis on any machine.
+constexpr std::size_t shortening_budget = 10'000'000;
+
 /// The cheapest of v - t w where t makes a common column vanish, if it is cheaper than v.
-std::optional<NullVector> shortened(const NullVector& v, const NullVector& w) {
+std::optional<NullVector> shortened(const NullVector& v, const NullVector& w, std::size_t& spent) {
   std::optional<NullVector> best;
   Cost least = cost_of(v);
   std::vector<mpq_class> tried;
@@ -120,10 +121,13 @@ std::optional<NullVector> shortened(const NullVector& v, const NullVector& w) {
     factor.canonicalize();
     if (std::find(tried.begin(), tried.end(), factor) != tried.end()) continue;
     tried.push_back(factor);
+    const Integer times_v = factor.get_den(), times_w = factor.get_num();
     NullVector next(v.size());
     for (std::size_t i = 0; i < v.size(); ++i) {
-      next[i] = v[i] * factor.get_den() - w[i] * factor.get_num();
+      if (v[i] != 0) next[i] = v[i] * times_v;
+      if (w[i] != 0) next[i] -= w[i] * times_w;
     }
+    spent += v.size() * (1 + mpz_size(v[j].get_mpz_t()) + mpz_size(w[j].get_mpz_t()));
     make_primitive(next);
     const Cost cost = cost_of(next);
     if (!(cost < least)) continue;
@@ -133,16 +137,18 @@ std::optional<NullVector> shortened(const NullVector& v, const NullVector& w) {
   return best;
 }
 
-/// Replaces vectors by cheaper combinations of two until none is cheaper. The span stays: the
-/// replaced vector has a factor that is not 0. Ends, for the costs fall.
+/// Replaces vectors by cheaper combinations of two until none is cheaper or the budget is spent.
+/// The span stays: the replaced vector has a factor that is not 0. Ends, for the costs fall.
 void shorten_pairwise(std::vector<NullVector>& basis) {
-  bool changed = basis.size() <= most_for_shortening;
+  std::size_t spent = 0;
+  bool changed = true;
   while (changed) {
     changed = false;
     for (std::size_t a = 0; a < basis.size(); ++a) {
       for (std::size_t b = 0; b < basis.size(); ++b) {
         if (a == b) continue;
-        auto shorter = shortened(basis[a], basis[b]);
+        if (spent > shortening_budget) return;
+        auto shorter = shortened(basis[a], basis[b], spent);
         if (!shorter) continue;
         basis[a] = std::move(*shorter);
         changed = true;

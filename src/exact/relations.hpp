@@ -54,8 +54,8 @@ struct ColumnSummary {
 /// among structural relations, the saturated lattice reduced by LLL and the vectors given, then
 /// shortened in pairs. A column costs 8 and each bit of its coefficient after the first 1, so that
 /// a coefficient of three digits weighs as much as one more column. Spans the same space; cheapest
-/// first; the same vectors give the same basis. Beyond a budget by bits x nullity the lattice is
-/// left out.
+/// first; the same vectors give the same basis. Beyond a budget by bits x nullity^2 the lattice is
+/// left out, beyond another shortening ends early.
 [[nodiscard]] std::vector<NullVector> readable_basis(const design::Design& design,
                                                      const table::Schema& schema,
                                                      const std::vector<NullVector>& null_vectors);

@@ -128,11 +128,22 @@ void count_in_words(const Plan& plan, const table::Piece& piece, const Rows& row
   if (size > test.largest_residual) test.largest_residual = size;
 }
 
-mpq_class exact_cell(const design::DesignColumn& column, const table::Piece& piece,
-                     std::size_t row) {
-  if (column.constant) return 1;
-  // Used rows have defined values: a row with a zero denominator never comes here.
-  return design::exact_value(*column.definition, piece, row).value_or(0);
+/// v . x in one row; none where a value is undefined.
+std::optional<mpq_class> exact_sum(const NullVector& vector,
+                                   const std::vector<std::size_t>& support,
+                                   const design::Design& design, const table::Piece& piece,
+                                   std::size_t row) {
+  mpq_class sum = 0;
+  for (const std::size_t j : support) {
+    if (j == design.columns.size() || design.columns[j].constant) {
+      sum += vector[j];
+      continue;
+    }
+    const auto value = design::exact_value(*design.columns[j].definition, piece, row);
+    if (!value) return std::nullopt;
+    sum += vector[j] * *value;
+  }
+  return sum;
 }
 
 void count_in_rationals(const NullVector& vector, const design::Design& design,
@@ -140,15 +151,13 @@ void count_in_rationals(const NullVector& vector, const design::Design& design,
                         RelationTest& test) {
   const std::vector<std::size_t> support = support_of(vector);
   for (const std::size_t row : rows) {
-    mpq_class sum = 0;
-    for (const std::size_t j : support) {
-      sum += j == design.columns.size() ? mpq_class(vector[j])
-                                        : vector[j] * exact_cell(design.columns[j], piece, row);
-    }
-    if (sum == 0) {
+    std::optional<mpq_class> sum = exact_sum(vector, support, design, piece, row);
+    // A row with an undefined value is no row of the design, as in residues().
+    if (!sum) continue;
+    if (*sum == 0) {
       ++test.holding;
     } else {
-      record(test, row, piece.row[row], std::move(sum), most);
+      record(test, row, piece.row[row], std::move(*sum), most);
     }
   }
 }

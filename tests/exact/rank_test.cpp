@@ -260,3 +260,21 @@ TEST_CASE("constructed cases agree with the exact rational elimination") {
     }
   }
 }
+
+TEST_CASE("quotients: ranks by residues, relations by rationals; an undefined row is no row") {
+  using design::Operation;
+  test::Matrix matrix = test::matrix_of(
+      {"a", "b"}, {{"1", "3"}, {"2", "7"}, {"5", "-2"}, {"4", "0.5"}, {"9", "11"}, {"3", "0"}});
+  const auto a = test::cell(0), b = test::cell(1);
+  test::add_column(matrix, "a / b", test::tree(Operation::divide, {a, b}));
+  test::add_column(matrix, "(a + b) / b",
+                   test::tree(Operation::divide, {test::tree(Operation::add, {a, b}), b}));
+  const auto rank = exact::rank_of_sample(matrix.design, matrix.piece, {0, 1, 2, 3, 4});
+  CHECK(rank.pivot_columns == std::vector<int>{0, 1, 2, 3});
+  REQUIRE(rank.null_vectors.size() == 1);
+  CHECK(rank.null_vectors[0] == integers({0, 0, 1, -1, 1}));
+  const auto tests =
+      exact::test_relations(matrix.design, matrix.piece, matrix.all_rows(), rank.null_vectors, 5);
+  CHECK(tests[0].holding == 5);
+  CHECK(tests[0].violating == 0);
+}
