@@ -87,7 +87,7 @@ double contrast_error(const factor::Factor& factor, const std::vector<int>& kept
     scaled[j] = std::ldexp(scaled[j], -own.exponents[static_cast<std::size_t>(j)]);
   }
   own.r.transpose().triangularView<Eigen::Lower>().solveInPlace(scaled);
-  return scaled.norm();
+  return scaled.stableNorm();  // tiny columns have coefficients whose squares overflow
 }
 
 }  // namespace gramproof::audit
