@@ -182,12 +182,18 @@ struct Step {
   } how = How::decimals;
 };
 
+/// A direction in which the columns stand apart by little more than their rounding.
+struct NoisyDirection {
+  double ratio = 0;          ///< its distance ratio
+  std::vector<int> columns;  ///< design columns that carry it
+};
+
 struct Recording {
   std::vector<Step> steps;
   Vector distance_ratios;  ///< ascending, whole numbers taken as exact; empty: no noise (infinite)
   Vector distance_ratios_whole_rounded;  ///< whole numbers taken as rounded to 1
-  std::vector<int> direction;  ///< design columns that carry the direction of the smallest ratio
-  std::vector<int> direction_whole_rounded;
+  std::vector<NoisyDirection> close;     ///< those with a ratio below 3, nearest first, at most 10
+  std::vector<NoisyDirection> close_whole_rounded;  ///< the same where whole numbers are rounded
   std::vector<std::optional<double>>
       attenuation;  ///< aligned with kept columns; none where no noise reaches the coefficient
   bool whole_numbers_matter = false;  ///< some step is `whole`

@@ -122,6 +122,7 @@ class FamilySpace {
   }
 
   static Matrix orthonormal(const Matrix& columns, Index rank) {
+    if (rank == 0) return Matrix(columns.rows(), 0);
     const Eigen::ColPivHouseholderQR<Matrix> decomposition(columns);
     return decomposition.householderQ() * Matrix::Identity(columns.rows(), rank);
   }

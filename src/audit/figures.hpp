@@ -59,9 +59,11 @@ namespace gramproof::audit {
 [[nodiscard]] Recording recording_of(const scan::Digest& digest, const std::vector<int>& kept,
                                      std::vector<Step> steps);
 
-/// One near relation for each scaled index >= 30 (kept columns): columns with |v_j| >= 0.1 max|v|,
-/// the largest refitted on the others by least squares in the columns' own units; the text names
-/// what competes. The worst first, at most `most`.
+/// Near relations of the kept columns, the worst first, at most `most`: while the scaled condition
+/// index is 30 or more, the columns with |v_j| >= 0.1 max|v| of the worst direction, the largest of
+/// them refitted on the others by least squares in the columns' own units; then that column is set
+/// aside and the rest is looked at again. Setting it aside keeps one relation from turning up in
+/// the next: two that are near each other in size have singular vectors that are mixtures of both.
 [[nodiscard]] std::vector<RelationFinding> near_relations(const factor::Factor& factor,
                                                           const design::Design& design,
                                                           const std::vector<int>& kept,

@@ -43,12 +43,10 @@ struct RatioReading {
   Grade grade = Grade::pass;
   double ratio = 0;
   bool any = false;
-  const std::vector<int>* direction = nullptr;
 };
 
-RatioReading read_ratios(const Vector& ratios, const std::vector<int>& direction) {
+RatioReading read_ratios(const Vector& ratios) {
   RatioReading reading;
-  reading.direction = &direction;
   if (ratios.size() == 0) return reading;
   reading.any = true;
   reading.ratio = ratios[0];
@@ -56,14 +54,20 @@ RatioReading read_ratios(const Vector& ratios, const std::vector<int>& direction
   return reading;
 }
 
-std::string ratio_sentence(const Audit& audit, const RatioReading& reading) {
+std::string ratio_sentence(const Audit& audit, const std::vector<NoisyDirection>& close) {
+  constexpr std::size_t most = 3;
+  std::string text;
+  for (std::size_t i = 0; i < close.size() && i < most; ++i) {
+    text += fmt::format("{}{}: {} times", i == 0 ? "" : "; ",
+                        names_in_words(labels(audit, close[i].columns)), figure(close[i].ratio));
+  }
+  if (close.size() > most) text += fmt::format("; and {} more", close.size() - most);
   return fmt::format(
-      "In one direction, {}, the columns differ by only {} times what the rounding of the recorded "
-      "numbers alone would "
-      "make (distance ratio; rounding alone gives about 1, below 1.4 at least half of the "
-      "difference is rounding, below 3 "
-      "a ninth: our own limits).",
-      names_in_words(labels(audit, *reading.direction)), figure(reading.ratio));
+      "In {} the columns stand apart by little more than the rounding of the recorded numbers "
+      "alone would make ({}; this distance ratio is about 1 where there is nothing but rounding, "
+      "below 1.4 at least half of what separates the columns is rounding, below 3 a ninth: our own "
+      "limits).",
+      close.size() == 1 ? "one direction" : "some directions", text);
 }
 
 }  // namespace
@@ -118,12 +122,11 @@ Ground computable_ground(const Audit& audit) {
 
 Ground recorded_ground(const Audit& audit) {
   const Recording& recording = audit.recording;
-  const RatioReading exact = read_ratios(recording.distance_ratios, recording.direction);
-  const RatioReading rounded =
-      read_ratios(recording.distance_ratios_whole_rounded, recording.direction_whole_rounded);
-  if (exact.grade != Grade::pass) return {exact.grade, ratio_sentence(audit, exact)};
+  const RatioReading exact = read_ratios(recording.distance_ratios);
+  const RatioReading rounded = read_ratios(recording.distance_ratios_whole_rounded);
+  if (exact.grade != Grade::pass) return {exact.grade, ratio_sentence(audit, recording.close)};
   if (rounded.any && rounded.grade != Grade::pass) {
-    return {Grade::caution, ratio_sentence(audit, rounded) +
+    return {Grade::caution, ratio_sentence(audit, recording.close_whole_rounded) +
                                 " That holds only if whole numbers are rounded values; if they are "
                                 "exact counts or codes, say so with "
                                 "--recorded COLUMN=exact and this caution goes."};

@@ -2,6 +2,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <limits>
 #include <set>
 
 #include "audit/figures.hpp"
@@ -142,6 +143,13 @@ RelationFinding finding_of(const factor::Factor& factor, const design::Design& d
   return finding;
 }
 
+/// The smallest singular triplet (and the largest value) of the named columns with unit length.
+factor::Spectrum worst_direction(const factor::Factor& factor, const std::vector<int>& columns) {
+  constexpr std::size_t all_at_once = 256;
+  const Matrix scaled = factor::unit_length(factor::select(factor, columns));
+  return columns.size() <= all_at_once ? factor::decompose(scaled) : factor::extremes(scaled, 1);
+}
+
 }  // namespace
 
 std::vector<RelationFinding> near_relations(const factor::Factor& factor,
@@ -149,18 +157,25 @@ std::vector<RelationFinding> near_relations(const factor::Factor& factor,
                                             const std::vector<int>& kept,
                                             const Conditioning& conditioning, std::size_t most) {
   std::vector<RelationFinding> findings;
-  const Vector& indices = conditioning.condition_indices;
-  for (Index i = indices.size() - 1; i > 0 && indices[i] >= told_from && findings.size() < most;
-       --i) {
-    std::vector<int> columns = members(conditioning.right_vectors.col(i));
-    if (columns.size() < 2) continue;
+  std::vector<int> remaining = kept;
+  const Index last = conditioning.condition_indices.size() - 1;
+  double index = conditioning.condition_indices[last];
+  Vector direction = conditioning.right_vectors.col(last);
+  while (index >= told_from && findings.size() < most && remaining.size() > 1) {
+    std::vector<int> columns = members(direction);
+    if (columns.size() < 2) break;
+    for (int& column : columns) column = remaining[static_cast<std::size_t>(column)];
     // The constant is never the one that is explained: it is written as a number.
-    const auto first_varying = std::find_if(columns.begin(), columns.end(), [&](int j) {
-      return !design.columns[static_cast<std::size_t>(kept[static_cast<std::size_t>(j)])].constant;
-    });
-    std::iter_swap(columns.begin(), first_varying);
-    for (int& column : columns) column = kept[static_cast<std::size_t>(column)];
-    findings.push_back(finding_of(factor, design, columns, indices[i]));
+    std::iter_swap(columns.begin(), std::find_if(columns.begin(), columns.end(), [&](int column) {
+                     return !design.columns[static_cast<std::size_t>(column)].constant;
+                   }));
+    findings.push_back(finding_of(factor, design, columns, index));
+    std::erase(remaining, columns.front());
+    const factor::Spectrum next = worst_direction(factor, remaining);
+    const Index smallest = next.values.size() - 1;
+    index = next.values[smallest] > 0 ? next.values[0] / next.values[smallest]
+                                      : std::numeric_limits<double>::infinity();
+    direction = next.right.col(smallest);
   }
   return findings;
 }

@@ -11,6 +11,10 @@ namespace {
 /// Standard deviation of an error spread evenly over one step.
 const double deviation_of_step = 1 / std::sqrt(12.0);
 
+/// Ratios worth naming the columns of: from 3 on the rounding is less than a ninth.
+constexpr double close_below = 3;
+constexpr Index most_close = 10;
+
 bool is_whole(const Step& step) {
   return step.how == Step::How::whole;
 }
@@ -95,11 +99,11 @@ Matrix root_of(const Matrix& noise) {
 
 struct Distances {
   Vector ratios;
-  std::vector<int> direction;
+  std::vector<NoisyDirection> close;
 };
 
-/// 1 / non-zero singular values of L R^-1, smallest first; the direction b = R^-1 v that the
-/// smallest belongs to.
+/// 1 / non-zero singular values of L R^-1, smallest first; for the close ones
+/// the direction b = R^-1 v.
 Distances distances(const Matrix& root, const Kept& kept, const std::vector<int>& names) {
   Distances result;
   if (root.rows() == 0) return result;
@@ -117,12 +121,15 @@ Distances distances(const Matrix& root, const Kept& kept, const std::vector<int>
   Index count = 0;
   while (count < values.size() && values[count] > floor) ++count;
   result.ratios = values.head(count).cwiseInverse();
-  if (count == 0) return result;
-  const Vector direction = kept.scaled.triangularView<Eigen::Upper>().solve(spectrum.right.col(0));
-  const double largest = direction.cwiseAbs().maxCoeff();
-  for (Index j = 0; j < direction.size(); ++j) {
-    if (std::abs(direction[j]) >= 0.1 * largest)
-      result.direction.push_back(names[static_cast<std::size_t>(j)]);
+  for (Index i = 0; i < count && result.ratios[i] < close_below && i < most_close; ++i) {
+    NoisyDirection direction{result.ratios[i], {}};
+    const Vector b = kept.scaled.triangularView<Eigen::Upper>().solve(spectrum.right.col(i));
+    const double largest = b.cwiseAbs().maxCoeff();
+    for (Index j = 0; j < b.size(); ++j) {
+      if (std::abs(b[j]) >= 0.1 * largest)
+        direction.columns.push_back(names[static_cast<std::size_t>(j)]);
+    }
+    result.close.push_back(std::move(direction));
   }
   return result;
 }
@@ -148,11 +155,11 @@ Recording recording_of(const scan::Digest& digest, const std::vector<int>& kept,
   const Matrix noise = noise_of(digest, steps, own, false);
   Distances exact = distances(root_of(noise), own, kept);
   result.distance_ratios = std::move(exact.ratios);
-  result.direction = std::move(exact.direction);
+  result.close = std::move(exact.close);
   if (result.whole_numbers_matter) {
     Distances rounded = distances(root_of(noise_of(digest, steps, own, true)), own, kept);
     result.distance_ratios_whole_rounded = std::move(rounded.ratios);
-    result.direction_whole_rounded = std::move(rounded.direction);
+    result.close_whole_rounded = std::move(rounded.close);
   }
   result.attenuation = attenuation_of(noise, own.scaled);
   result.steps = std::move(steps);

@@ -34,7 +34,7 @@ std::string reason_words(const design::Exclusion& entry, const table::Schema& sc
     case Reason::missing:
       return "missing in \"" + schema.columns[at].name + "\"";
     case Reason::undefined:
-      return "undefined in " + design.columns[at].label;
+      return entry.column < 0 ? "undefined in --rows" : "undefined in " + design.columns[at].label;
     case Reason::weight_zero:
       break;
   }

@@ -1,7 +1,8 @@
 // src/base/result.hpp - errors as values.
 //
-// Every function that can meet bad input returns Result<T>. An Error says where, what, and what to do; the
-// library never prints and never exits. A finding about a design is not an error: it is part of the audit.
+// Every function that can meet bad input returns Result<T>. An Error says where, what, and what to
+// do; the library never prints and never exits. A finding about a design is not an error: it is
+// part of the audit.
 #pragma once
 
 #include <optional>
@@ -22,20 +23,22 @@ enum class ErrorKind {
 
 struct Error {
   ErrorKind kind = ErrorKind::internal;
-  std::string where;  ///< e.g. "harbour.csv:1042:17" (file:line:column, both from 1) or "--design:14"; may be empty
+  std::string where;  ///< e.g. "harbour.csv:1042:17" (file:line:column, both from 1) or
+                      ///< "--design:14"; may be empty
   std::string what;   ///< one clause, no final full stop; names the cell or word that is wrong
   std::string hint;   ///< what to do, one clause; may be empty
 };
 
-/// One line without the program's prefix: `where: what (hint)`. Control characters are made visible.
+/// One line without the program's prefix: `where: what (hint)`. Control characters are made
+/// visible.
 [[nodiscard]] std::string to_line(const Error& error);
 
 /// T or Error (C++20 has no std::expected).
 template <class T>
 class [[nodiscard]] Result {
  public:
-  Result(T value) : content_(std::move(value)) {}          // NOLINT: implicit by intent
-  Result(Error error) : content_(std::move(error)) {}      // NOLINT
+  Result(T value) : content_(std::move(value)) {}      // NOLINT: implicit by intent
+  Result(Error error) : content_(std::move(error)) {}  // NOLINT
   [[nodiscard]] explicit operator bool() const { return content_.index() == 0; }
   [[nodiscard]] T& value() { return std::get<0>(content_); }
   [[nodiscard]] const T& value() const { return std::get<0>(content_); }

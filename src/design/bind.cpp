@@ -28,6 +28,26 @@ bool holds_zero_one(const Expression& expression, const table::Schema& schema) {
   return facts.present > 0 && facts.all_whole && facts.smallest >= 0 && facts.largest <= 1;
 }
 
+/// The text as asked, without remarks and with runs of blanks as one: it still pastes back.
+std::string on_one_line(const std::string& text) {
+  std::string line;
+  bool quoted = false, remark = false;
+  for (const char c : text) {
+    if (c == '"') quoted = !quoted;
+    if (c == '#' && !quoted) remark = true;
+    if (c == '\n') remark = false;
+    if (remark) continue;
+    const bool blank = c == ' ' || c == '\t' || c == '\n' || c == '\r';
+    if (blank && !quoted) {
+      if (!line.empty() && line.back() != ' ') line += ' ';
+    } else {
+      line += c;
+    }
+  }
+  while (!line.empty() && line.back() == ' ') line.pop_back();
+  return line;
+}
+
 /// The work of one bind(): places of the analyst's names, then terms, then the condition.
 class Build {
  public:
@@ -43,7 +63,7 @@ class Build {
         has_part_(schema.columns.size(), false) {}
 
   Result<Design> run() {
-    design_.text = request_.design;
+    design_.text = on_one_line(request_.design);
     design_.undefined = request_.undefined;
     if (Result<void> named = named_columns(); !named) return named.error();
     if (Result<void> filter = bind_condition(); !filter) return filter.error();

@@ -89,6 +89,15 @@ Json between_part(const audit::Audit& audit) {
   return part;
 }
 
+/// Directions close to the rounding: each ratio is below 3, so finite.
+Json close_directions(const audit::Audit& audit, const std::vector<audit::NoisyDirection>& close) {
+  Json list = Json::array();
+  for (const audit::NoisyDirection& direction : close) {
+    list.push_back({{"ratio", direction.ratio}, {"columns", labels_of(audit, direction.columns)}});
+  }
+  return list;
+}
+
 Json recording_part(const audit::Audit& audit) {
   const audit::Recording& recording = audit.recording;
   Json part = Json::object();
@@ -99,9 +108,9 @@ Json recording_part(const audit::Audit& audit) {
                              {"how", audit::word_of(step.how)}});
   }
   put_numbers(part, "distance_ratios", recording.distance_ratios);
-  part["direction"] = labels_of(audit, recording.direction);
+  part["close"] = close_directions(audit, recording.close);
   put_numbers(part, "distance_ratios_whole_rounded", recording.distance_ratios_whole_rounded);
-  part["direction_whole_rounded"] = labels_of(audit, recording.direction_whole_rounded);
+  part["close_whole_rounded"] = close_directions(audit, recording.close_whole_rounded);
   part["whole_numbers_matter"] = recording.whole_numbers_matter;
   part["attenuation"] = Json::array();
   for (std::size_t i = 0; i < recording.attenuation.size() && i < audit.kept.size(); ++i) {

@@ -46,15 +46,17 @@ double smallest(const Vector& ratios) {
   return ratios.size() == 0 ? std::numeric_limits<double>::infinity() : ratios[0];
 }
 
-void write_ratio(const audit::Audit& audit, const Vector& ratios, const std::vector<int>& direction,
-                 std::string_view reading, Page& page) {
+void write_ratio(const audit::Audit& audit, const Vector& ratios,
+                 const std::vector<audit::NoisyDirection>& close, std::string_view reading,
+                 Page& page) {
   const double ratio = smallest(ratios);
   if (std::isinf(ratio)) return;
   std::string text =
       fmt::format("{} a singular X is {} as far away as rounding alone moves the columns", reading,
                   times(ratio, known_digits_of_squares(audit)));
-  if (!direction.empty())
-    text += fmt::format("; the nearest one is reached through {}", names_of(audit, direction));
+  if (!close.empty())
+    text += fmt::format("; the nearest one is reached through {}",
+                        names_of(audit, close.front().columns));
   page.paragraph(text + ".", 2);
 }
 
@@ -110,11 +112,11 @@ void write_recording(const audit::Audit& audit, Page& page) {
         2);
   }
   write_ratio(
-      audit, recording.distance_ratios, recording.direction,
+      audit, recording.distance_ratios, recording.close,
       recording.whole_numbers_matter ? "Taking whole numbers as exact," : "With these steps,",
       page);
   if (recording.whole_numbers_matter) {
-    write_ratio(audit, recording.distance_ratios_whole_rounded, recording.direction_whole_rounded,
+    write_ratio(audit, recording.distance_ratios_whole_rounded, recording.close_whole_rounded,
                 "Taking them as rounded,", page);
   }
   write_attenuation(audit, page);

@@ -8,8 +8,9 @@
 
 namespace gramproof::table {
 
-/// The texts that mean "missing". A cell is compared after blanks around it are taken off, quoted or not, and with exact case:
-/// `na` is a text where the list says `NA`. A blank cell is missing only if "" is in the list.
+/// The texts that mean "missing". A cell is compared after blanks around it are taken off, quoted
+/// or not, and with exact case: `na` is a text where the list says `NA`. A blank cell is missing
+/// only if "" is in the list.
 class MissingTexts {
  public:
   MissingTexts() = default;

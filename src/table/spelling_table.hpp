@@ -1,4 +1,5 @@
-// src/table/spelling_table.hpp - the different texts of one column within one piece, in order of first appearance.
+// src/table/spelling_table.hpp - the different texts of one column within one piece, in order of
+// first appearance.
 #pragma once
 
 #include <cstdint>
@@ -19,8 +20,8 @@ struct Spelling {
   CellClass kind = CellClass::text;
 };
 
-/// Open addressing with linear probing. A piece has few texts and is thrown away soon, so one flat table of numbers beats a
-/// map of nodes; it starts small because a table may have 100,000 columns.
+/// Open addressing with linear probing. A piece has few texts and is thrown away soon, so one flat
+/// table of numbers beats a map of nodes; it starts small because a table may have 100,000 columns.
 class SpellingTable {
  public:
   [[nodiscard]] const std::vector<Spelling>& spellings() const { return spellings_; }
@@ -41,8 +42,9 @@ class SpellingTable {
   }
 
  private:
-  /// Eight bytes at a time through a multiplication (multipliers: 2^64 / golden ratio, and an odd number
-  /// near 2^63). A piece has at most 4,096 texts, which bounds what chosen collisions could cost.
+  /// Eight bytes at a time through a multiplication (multipliers: 2^64 / golden ratio, and an odd
+  /// number near 2^63). A piece has at most 4,096 texts, which bounds what chosen collisions could
+  /// cost.
   static std::uint32_t hash_of(std::string_view text) {
     std::uint64_t hash = text.size() * 0x9E3779B97F4A7C15u;
     const char* at = text.data();

@@ -10,15 +10,15 @@
 
 namespace gramproof::table {
 
-/// Copies a pipe to an unlinked temporary file while it is read for the first time. Not thread-safe: one
-/// reader at a time.
+/// Copies a pipe to an unlinked temporary file while it is read for the first time. Not
+/// thread-safe: one reader at a time.
 class Spool {
  public:
   /// `most_bytes` (0: the rule of stored_file.hpp) bounds the copy; tests lower it.
   Spool(Descriptor pipe, std::string name, std::uint64_t most_bytes = 0);
 
-  /// Bytes from offset `at` on: from the copy, then from the pipe. Errors (io): a read failed, or the copy
-  /// was given up and `at` is no longer the pipe's own place.
+  /// Bytes from offset `at` on: from the copy, then from the pipe. Errors (io): a read failed, or
+  /// the copy was given up and `at` is no longer the pipe's own place.
   [[nodiscard]] Result<std::size_t> read(std::uint64_t at, char* to, std::size_t size);
 
  private:

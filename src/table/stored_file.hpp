@@ -1,9 +1,11 @@
-// src/table/stored_file.hpp - a file of the command line as it is stored: opened anew for each pass.
+// src/table/stored_file.hpp - a file of the command line as it is stored: opened anew for each
+// pass.
 //
-// A regular file is opened by name for each pass and must be the same each time. Standard input, a FIFO or
-// a device can be read once only: its bytes are copied, as they come, to an unlinked file in TMPDIR (/tmp without it),
-// so that further passes read the copy. The copy is given up, and the reading goes on, when it would pass
-// 64 GB or half of the space that was free at the start; a further pass is an error then.
+// A regular file is opened by name for each pass and must be the same each time. Standard input, a
+// FIFO or a device can be read once only: its bytes are copied, as they come, to an unlinked file
+// in TMPDIR (/tmp without it), so that further passes read the copy. The copy is given up, and the
+// reading goes on, when it would pass 64 GB or half of the space that was free at the start; a
+// further pass is an error then.
 #pragma once
 
 #include <sys/types.h>
@@ -38,8 +40,8 @@ class StoredFile {
   [[nodiscard]] std::uint64_t bytes() const;                       ///< 0 when unknown
   [[nodiscard]] bool readable_once() const { return spool_ != nullptr; }
 
-  /// The stored bytes from the first one on. Errors (io): the file changed since find(), or cannot be
-  /// opened any more, or its spool was given up.
+  /// The stored bytes from the first one on. Errors (io): the file changed since find(), or cannot
+  /// be opened any more, or its spool was given up.
   [[nodiscard]] Result<std::unique_ptr<ByteStream>> open() const;
 
   /// Error if the file is not what it was at find(); to be asked at the end of a pass.

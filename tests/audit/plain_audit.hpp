@@ -37,7 +37,7 @@ inline audit::Audit plain_audit() {
   audit.between.proportions << 0.4, 0.4, 0.6, 0.6;
   audit.between.inflation = {{1, 1, 1.2, 1.1}, {2, 1, 1.2, 1.1}};
   audit.recording.distance_ratios = Vector::Constant(1, 40.0);
-  audit.recording.direction = {1, 2};
+  audit.recording.close = {{1.0, {1, 2}}};
   return audit;
 }
 

@@ -82,7 +82,8 @@ TEST_CASE("recorded: distance ratio under both readings of whole numbers") {
       audit.recording.distance_ratios = exact > 0 ? Vector(Vector::Constant(1, exact)) : Vector();
       audit.recording.distance_ratios_whole_rounded =
           rounded > 0 ? Vector(Vector::Constant(1, rounded)) : Vector();
-      audit.recording.direction_whole_rounded = {2};
+      audit.recording.close = {{exact, {1, 2}}};
+      audit.recording.close_whole_rounded = {{rounded, {2}}};
     };
   };
   check_cases({{"no noise at all", ratios(0, 0), Grade::pass, "No column"},

@@ -119,8 +119,8 @@ Audit near() {
                            {2, 1, audit::Step::How::whole}};
   audit.recording.distance_ratios = Vector::Constant(1, 12.4);
   audit.recording.distance_ratios_whole_rounded = Vector::Constant(1, 2.61);
-  audit.recording.direction = {1, 2};
-  audit.recording.direction_whole_rounded = {3, 4};
+  audit.recording.close = {{1.0, {1, 2}}};
+  audit.recording.close_whole_rounded = {{1.0, {3, 4}}};
   audit.recording.whole_numbers_matter = true;
   audit.recording.attenuation = {std::nullopt, 0.0068, 0.0041, 0.0001, 0.0001};
   return audit;
