@@ -2,6 +2,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <cstdlib>
 #include <limits>
 #include <set>
 
@@ -31,13 +32,19 @@ std::vector<int> members(const Vector& direction) {
   return result;
 }
 
-/// Digits of a coefficient up to the second uncertain one, from two to five.
+/// `value` rounded to so many significant digits.
+double rounded(double value, int digits) {
+  return std::strtod(fmt::format("{:.{}e}", value, digits - 1).c_str(), nullptr);
+}
+
+/// The fewest digits that stay within two standard errors of a coefficient, at most five: nobody is
+/// helped by 0.99964 where 1 fits the data as well.
 int digits_worth_writing(double coefficient, double error) {
-  constexpr int fewest = 2, most = 5;
-  if (!(error > 0)) return most;
-  const double sure = std::log10(std::abs(coefficient) / error);
-  if (!(sure > 0)) return fewest;
-  return std::min(most, fewest + static_cast<int>(sure));
+  constexpr int most = 5;
+  int digits = 1;
+  while (digits < most && !(std::abs(rounded(coefficient, digits) - coefficient) <= 2 * error))
+    ++digits;
+  return digits;
 }
 
 struct Refit {
@@ -59,10 +66,10 @@ Refit refit(const factor::Factor& factor, const std::vector<int>& columns) {
   const Vector errors = std::abs(own.r(others, others)) / std::sqrt(freedom) *
                         factor::triangular_inverse(triangle).rowwise().norm();
   for (Index j = 0; j < others; ++j) {
-    double& coefficient = result.coefficients[j];
-    result.digits.push_back(digits_worth_writing(coefficient, errors[j]));
-    coefficient =
-        std::ldexp(coefficient, own.exponents.back() - own.exponents[static_cast<std::size_t>(j)]);
+    const int exponent = own.exponents.back() - own.exponents[static_cast<std::size_t>(j)];
+    result.coefficients[j] = std::ldexp(result.coefficients[j], exponent);
+    result.digits.push_back(
+        digits_worth_writing(result.coefficients[j], std::ldexp(errors[j], exponent)));
   }
   return result;
 }
@@ -75,8 +82,8 @@ std::string number(double value, int digits) {
     return number(value / std::pow(10.0, exponent), digits) + "\u00b710^" +
            std::to_string(exponent);
   }
-  // Whole digits are all written: 12346 is no harder to read than 12350.
-  std::string text = fmt::format("{:.{}f}", value, std::max(0, digits - 1 - exponent));
+  std::string text =
+      fmt::format("{:.{}f}", rounded(value, digits), std::max(0, digits - 1 - exponent));
   if (text.find('.') != std::string::npos) {
     text.erase(text.find_last_not_of('0') + 1);
     if (text.back() == '.') text.pop_back();
