@@ -1,6 +1,7 @@
 #include <Eigen/QR>
 #include <algorithm>
 #include <cmath>
+#include <limits>
 #include <set>
 
 #include "audit/figures.hpp"
@@ -10,144 +11,194 @@
 namespace gramproof::audit {
 namespace {
 
+using Columns = std::vector<int>;
+
+void append(Columns& to, const Columns& more) {
+  to.insert(to.end(), more.begin(), more.end());
+}
+
+bool covers(const Columns& columns, const Columns& wanted) {
+  return std::all_of(wanted.begin(), wanted.end(), [&](int column) {
+    return std::find(columns.begin(), columns.end(), column) != columns.end();
+  });
+}
+
 /// Works in coordinates of the factor's rows, where every column of X is a column of R: columns of
-/// unit length, ones last.
+/// unit length, ones last. Where the constant is projected out, `base` is the column of ones and
+/// the family that holds the constant is short of one column, which the ones stand for: all columns
+/// named here are then linearly independent, and a family's dimension is their number.
 class FamilySpace {
  public:
-  FamilySpace(const factor::Factor& factor, const design::Design& design,
-              const std::vector<int>& kept, const std::vector<int>& constant_support)
-      : design_(design), columns_(factor::unit_length(factor)), support_(constant_support) {
+  FamilySpace(const factor::Factor& factor, const design::Design& design, const Columns& kept,
+              const Columns& constant_support)
+      : design_(design), columns_(factor::unit_length(factor)) {
     const std::set<int> is_kept(kept.begin(), kept.end());
-    for (std::size_t f = 0; f < design.families.size(); ++f) {
-      std::vector<int> own;
-      for (const int column : design.families[f].columns) {
-        if (is_kept.contains(column) && !design.columns[static_cast<std::size_t>(column)].constant)
-          own.push_back(column);
+    for (const design::Family& family : design.families) {
+      Columns own;
+      for (const int column : family.columns) {
+        if (is_kept.contains(column) && !is_constant(column)) own.push_back(column);
       }
       own_.push_back(std::move(own));
     }
-    // Shares that add up to one, without a constant, differ in nothing but the constant: taking it
-    // out would make competitors of columns that are told apart perfectly. It stays in then.
-    if (!constant_has_a_home()) support_.clear();
+    if (!constant_support.empty()) project_constant_out(constant_support);
   }
 
-  [[nodiscard]] const std::vector<int>& own(int family) const {
+  [[nodiscard]] const Matrix& columns() const { return columns_; }
+  [[nodiscard]] const Columns& base() const { return base_; }
+  [[nodiscard]] const Columns& own(int family) const {
     return own_[static_cast<std::size_t>(family)];
   }
-  [[nodiscard]] std::size_t families() const { return own_.size(); }
+  [[nodiscard]] int families() const { return static_cast<int>(own_.size()); }
 
   [[nodiscard]] bool is_under(int below, int above) const {
     return below != above && design::is_under(design_.families[static_cast<std::size_t>(below)],
                                               design_.families[static_cast<std::size_t>(above)]);
   }
 
-  /// Families with kept columns under F, and those neither under nor above it.
-  [[nodiscard]] std::vector<int> columns_under(int family) const {
+  [[nodiscard]] Columns under(int family) const {
     return collect([&](int other) { return is_under(other, family); });
   }
-  [[nodiscard]] std::vector<int> columns_beside(int family) const {
+  [[nodiscard]] Columns above(int family) const {
+    return collect([&](int other) { return is_under(family, other); });
+  }
+  /// Neither under nor above the family.
+  [[nodiscard]] Columns beside(int family) const {
     return collect([&](int other) {
       return other != family && !is_under(other, family) && !is_under(family, other);
     });
   }
 
-  /// Rank that `columns` add beside `base` and the projected constant: exact, since kept columns
-  /// are independent and the constant is a combination of exactly the columns of `support_`.
-  [[nodiscard]] Index rank_added(const std::vector<int>& base,
-                                 const std::vector<int>& columns) const {
-    std::vector<int> both = base;
-    both.insert(both.end(), columns.begin(), columns.end());
-    const bool gives_constant = !support_.empty() && covers_support(both) && !covers_support(base);
-    return static_cast<Index>(columns.size()) - (gives_constant ? 1 : 0);
-  }
-
-  /// Orthonormal basis of the constant (where it is in the span) and the columns.
-  [[nodiscard]] Matrix base_of(const std::vector<int>& columns) const {
-    std::vector<int> all = columns;
-    Index rank = static_cast<Index>(columns.size());
-    if (!support_.empty()) {
-      all.insert(all.begin(), static_cast<int>(columns_.cols()) - 1);
-      if (!covers_support(columns)) ++rank;
-    }
-    return orthonormal(columns_(Eigen::all, all), rank);
-  }
-
-  /// Orthonormal basis of what `columns` add beside a base.
-  [[nodiscard]] Matrix beside(const Matrix& base, const std::vector<int>& columns,
-                              Index rank) const {
-    // What is left is not scaled to one length: of a column inside the base's span that is rounding
-    // alone, which must come last among the pivots.
-    Matrix rest = columns_(Eigen::all, columns);
-    project_out(base, rest);
-    return orthonormal(rest, rank);
-  }
-
-  /// Twice is enough (Kahan; Parlett 1980): after the second time what is left is orthogonal to
-  /// working precision.
-  static void project_out(const Matrix& base, Matrix& columns) {
-    if (base.cols() == 0) return;
-    for (int time = 0; time < 2; ++time) columns -= base * (base.transpose() * columns);
-  }
-
  private:
+  [[nodiscard]] bool is_constant(int column) const {
+    return design_.columns[static_cast<std::size_t>(column)].constant;
+  }
+
   template <class Wanted>
-  [[nodiscard]] std::vector<int> collect(Wanted&& wanted) const {
-    std::vector<int> columns;
-    for (std::size_t f = 0; f < own_.size(); ++f) {
-      if (wanted(static_cast<int>(f)))
-        columns.insert(columns.end(), own_[f].begin(), own_[f].end());
+  [[nodiscard]] Columns collect(Wanted&& wanted) const {
+    Columns columns;
+    for (int f = 0; f < families(); ++f) {
+      if (wanted(f)) append(columns, own(f));
     }
     return columns;
   }
 
-  [[nodiscard]] bool covers_support(const std::vector<int>& columns) const {
-    return std::all_of(support_.begin(), support_.end(), [&](int column) {
-      return std::find(columns.begin(), columns.end(), column) != columns.end();
-    });
+  /// The constant is a column, or lies in the span of one family and those under it. Shares that
+  /// add up to one, without a constant, have no such home: they differ in nothing but the constant,
+  /// and taking it out would make competitors of columns that are told apart perfectly. It stays in
+  /// then.
+  void project_constant_out(const Columns& support) {
+    const Columns ones = {static_cast<int>(columns_.cols()) - 1};
+    if (std::any_of(support.begin(), support.end(), [&](int c) { return is_constant(c); })) {
+      base_ = ones;
+      return;
+    }
+    for (int f = 0; f < families(); ++f) {
+      Columns columns = under(f);
+      if (covers(columns, support)) continue;
+      append(columns, own(f));
+      if (!covers(columns, support)) continue;
+      base_ = ones;
+      std::erase(own_[static_cast<std::size_t>(f)], largest_part(support, own(f)));
+      return;
+    }
   }
 
-  /// The constant is a column, or lies in the span of one family and those under it.
-  [[nodiscard]] bool constant_has_a_home() const {
-    if (std::any_of(support_.begin(), support_.end(), [&](int column) {
-          return design_.columns[static_cast<std::size_t>(column)].constant;
-        })) {
-      return true;
+  /// The column of both lists with the largest part in the constant.
+  [[nodiscard]] int largest_part(const Columns& support, const Columns& among) const {
+    const Eigen::HouseholderQR<Matrix> decomposition(columns_(Eigen::all, support));
+    const Vector parts = decomposition.solve(columns_.col(columns_.cols() - 1)).cwiseAbs();
+    int result = -1;
+    double largest = -1;
+    for (std::size_t i = 0; i < support.size(); ++i) {
+      const double part = parts[static_cast<Index>(i)];
+      if (part <= largest || !covers(among, {support[i]})) continue;
+      largest = part;
+      result = support[i];
     }
-    for (std::size_t f = 0; f < own_.size(); ++f) {
-      std::vector<int> columns = columns_under(static_cast<int>(f));
-      columns.insert(columns.end(), own_[f].begin(), own_[f].end());
-      if (covers_support(columns)) return true;
-    }
-    return false;
-  }
-
-  static Matrix orthonormal(const Matrix& columns, Index rank) {
-    if (rank == 0) return Matrix(columns.rows(), 0);
-    const Eigen::ColPivHouseholderQR<Matrix> decomposition(columns);
-    return decomposition.householderQ() * Matrix::Identity(columns.rows(), rank);
+    return result;
   }
 
   const design::Design& design_;
   Matrix columns_;
-  std::vector<int> support_;
-  std::vector<std::vector<int>> own_;
+  Columns base_;
+  std::vector<Columns> own_;
 };
 
-/// Product of 1 / (1 - rho^2) over the canonical correlations with `others`; 1 - rho^2 are squared
-/// sines, the singular values of what `basis` keeps beside `others`: no cancellation near rho = 1.
-double generalised_vif(const Matrix& basis, const Matrix& others) {
-  Matrix rest = basis;
-  FamilySpace::project_out(others, rest);
-  const Eigen::HouseholderQR<Matrix> decomposition(rest);
-  const Matrix r = decomposition.matrixQR().topRows(rest.cols());
-  return std::pow(10.0, -2 * factor::log10_abs_determinant(r));
+/// What the last columns keep beside those before them: an orthonormal basis, and the logarithm of
+/// the volume they span.
+struct Remainder {
+  Matrix basis;
+  double log10_volume = 0;
+};
+
+Remainder remainder(const Matrix& columns, const Columns& before, const Columns& last) {
+  Columns all = before;
+  append(all, last);
+  const auto count = static_cast<Index>(all.size());
+  const auto width = static_cast<Index>(last.size());
+  const Eigen::HouseholderQR<Matrix> decomposition(columns(Eigen::all, all));
+  Remainder result;
+  result.basis =
+      decomposition.householderQ() * Matrix::Identity(columns.rows(), count).rightCols(width);
+  result.log10_volume = factor::log10_abs_determinant(
+      decomposition.matrixQR().block(count - width, count - width, width, width));
+  return result;
+}
+
+/// Volumes that families keep beside all other columns, from one inverse: rows F of R^-1 span its
+/// reciprocal.
+class VolumesBesideAll {
+ public:
+  explicit VolumesBesideAll(const FamilySpace& space) {
+    Columns all = space.base();
+    for (int f = 0; f < space.families(); ++f) {
+      first_.push_back(static_cast<Index>(all.size()));
+      append(all, space.own(f));
+    }
+    const auto count = static_cast<Index>(all.size());
+    const Eigen::HouseholderQR<Matrix> decomposition(space.columns()(Eigen::all, all));
+    inverse_ = factor::triangular_inverse(decomposition.matrixQR().topRows(count));
+  }
+
+  [[nodiscard]] double log10_volume(int family, Index dimensions) const {
+    const Index first = first_[static_cast<std::size_t>(family)];
+    const Eigen::HouseholderQR<Matrix> decomposition(
+        inverse_.middleRows(first, dimensions).transpose());
+    return -factor::log10_abs_determinant(
+        decomposition.matrixQR().topLeftCorner(dimensions, dimensions));
+  }
+
+ private:
+  std::vector<Index> first_;
+  Matrix inverse_;
+};
+
+/// Product of 1 / (1 - rho^2) over the canonical correlations with the families beside: the squared
+/// ratio of two volumes, what the family keeps beside those under it and what is left of it beside
+/// the others too. Nothing is subtracted, so nothing cancels near rho = 1.
+double generalised_vif(const FamilySpace& space, const VolumesBesideAll& beside_all, int family,
+                       double log10_own) {
+  const Columns& own = space.own(family);
+  const Columns beside = space.beside(family);
+  if (beside.empty()) return 1;
+  double log10_left = 0;
+  if (space.above(family).empty()) {
+    log10_left = beside_all.log10_volume(family, static_cast<Index>(own.size()));
+  } else {
+    Columns before = space.base();
+    append(before, space.under(family));
+    append(before, beside);
+    log10_left = remainder(space.columns(), before, own).log10_volume;
+  }
+  const double result = std::pow(10.0, 2 * (log10_own - log10_left));
+  return std::isnan(result) ? std::numeric_limits<double>::infinity() : std::max(1.0, result);
 }
 
 /// Families with something of their own, small source sets first.
 std::vector<int> ordered_families(const FamilySpace& space, const design::Design& design) {
   std::vector<int> order;
-  for (std::size_t f = 0; f < space.families(); ++f) {
-    if (!space.own(static_cast<int>(f)).empty()) order.push_back(static_cast<int>(f));
+  for (int f = 0; f < space.families(); ++f) {
+    if (!space.own(f).empty()) order.push_back(f);
   }
   std::stable_sort(order.begin(), order.end(), [&](int a, int b) {
     return design.families[static_cast<std::size_t>(a)].sources.size() <
@@ -189,24 +240,21 @@ BetweenFamilies between_families(const factor::Factor& factor, const design::Des
                                  const std::vector<int>& kept,
                                  const std::vector<int>& constant_support) {
   const FamilySpace space(factor, design, kept, constant_support);
+  const VolumesBesideAll beside_all(space);
   BetweenFamilies result;
   std::vector<Matrix> blocks;
   for (const int family : ordered_families(space, design)) {
-    const std::vector<int> under = space.columns_under(family);
-    const Index dimensions = space.rank_added(under, space.own(family));
-    if (dimensions == 0) continue;
-    const Matrix base = space.base_of(under);
-    Matrix basis = space.beside(base, space.own(family), dimensions);
-    FamilyInflation inflation{family, static_cast<int>(dimensions), 1, 1};
-    const std::vector<int> others = space.columns_beside(family);
-    if (const Index rank = space.rank_added(under, others); rank > 0) {
-      inflation.generalised_vif = generalised_vif(basis, space.beside(base, others, rank));
-      inflation.per_dimension =
-          std::pow(inflation.generalised_vif, 0.5 / static_cast<double>(dimensions));
-    }
+    Columns before = space.base();
+    append(before, space.under(family));
+    Remainder own = remainder(space.columns(), before, space.own(family));
+    const auto dimensions = static_cast<int>(space.own(family).size());
+    FamilyInflation inflation{family, dimensions, 1, 1};
+    inflation.generalised_vif = generalised_vif(space, beside_all, family, own.log10_volume);
+    inflation.per_dimension =
+        std::pow(inflation.generalised_vif, 0.5 / static_cast<double>(dimensions));
     result.families.push_back(family);
     result.inflation.push_back(inflation);
-    blocks.push_back(std::move(basis));
+    blocks.push_back(std::move(own.basis));
   }
   if (blocks.empty()) return result;
   Index width = 0;

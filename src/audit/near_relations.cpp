@@ -152,7 +152,7 @@ RelationFinding finding_of(const factor::Factor& factor, const design::Design& d
 
 /// The smallest singular triplet (and the largest value) of the named columns with unit length.
 factor::Spectrum worst_direction(const factor::Factor& factor, const std::vector<int>& columns) {
-  constexpr std::size_t all_at_once = 256;
+  constexpr std::size_t all_at_once = 40;  // beyond, Lanczos is faster (tests/bench)
   const Matrix scaled = factor::unit_length(factor::select(factor, columns));
   return columns.size() <= all_at_once ? factor::decompose(scaled) : factor::extremes(scaled, 1);
 }
