@@ -14,8 +14,9 @@
 namespace gramproof::factor {
 namespace {
 
-/// Up to this many columns the rotations take a tenth of a second at most, seven times as long as
-/// divide and conquer (tests/bench): a price worth paying for digits that do not depend on units.
+/// Up to this many columns the rotations take a twentieth of a second at most, seven times as long
+/// as divide and conquer (tests/bench): a price worth paying for digits that do not depend on
+/// units.
 constexpr Index jacobi_up_to = 128;
 
 /// x -> (r'r)^-1 x by two triangular solves: its largest eigenvalues are 1 / sigma^2 of the

@@ -271,3 +271,34 @@ TEST_CASE("a constant alone has no families between which to judge") {
   CHECK(found.families.empty());
   CHECK(found.indices.size() == 0);
 }
+
+TEST_CASE("a family of one column has the generalised inflation that is its VIF") {
+  // [FM92]: the generalised figure reduces to the usual one. Both ways of computing it are met:
+  // columns with a product above them, and columns without.
+  const Index rows = 300, columns = 30;
+  Matrix x = test::constant_and_random(rows, columns, 11);
+  std::vector<test::MadeFamily> families = {{"constant", {}, {"constant"}}};
+  std::vector<int> kept = {0};
+  for (int j = 1; j < static_cast<int>(columns); ++j) {
+    families.push_back({"x" + std::to_string(j), {j}, {"x" + std::to_string(j)}});
+    kept.push_back(j);
+  }
+  std::vector<bool> is_constant(kept.size(), false);
+  is_constant[0] = true;
+  const auto vifs =
+      audit::inflation_of(test::folded_with_ones(x), kept, is_constant, audit::CentredBy::column);
+  const auto alone = between(x, test::made_design(families), {0});
+  Matrix with_product(rows, columns + 1);
+  with_product << x, x.col(1).cwiseProduct(x.col(2));
+  families.push_back({"x1 * x2", {1, 2}, {"x1 * x2"}});
+  const auto under = between(with_product, test::made_design(families), {0});
+  REQUIRE(alone.inflation.size() == static_cast<std::size_t>(columns) - 1);
+  for (std::size_t f = 0; f < alone.inflation.size(); ++f) {
+    CAPTURE(f);
+    CHECK(std::abs(alone.inflation[f].generalised_vif / vifs[f + 1].vif.value() - 1) <= mild);
+    const bool below_product = f < 2;
+    if (!below_product) continue;
+    CHECK(std::abs(under.inflation[f].generalised_vif / vifs[f + 1].vif.value() - 1) <= mild);
+  }
+  check_proportions_add_up(under);
+}

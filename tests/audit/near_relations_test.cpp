@@ -194,3 +194,26 @@ TEST_CASE("the worst first, each on its own, at most as many as asked, none belo
   CHECK(near_relations(x, design, 1).size() == 1);
   CHECK(near_relations(x.leftCols(4), separate_columns({"a", "b", "c", "d"})).empty());
 }
+
+TEST_CASE("relations of a wide design are found by solves as by the whole decomposition") {
+  test::Random random(12);
+  const Index rows = 200, columns = 70;
+  Matrix x(rows, columns);
+  std::vector<std::string> labels;
+  for (Index j = 0; j < columns; ++j) {
+    x.col(j) = uniform(rows, -1, 1, random);
+    labels.push_back("x" + std::to_string(j));
+  }
+  const double sizes[] = {1e-5, 1e-4, 1e-3};
+  for (Index pair = 0; pair < 3; ++pair) {
+    x.col(60 + pair) = x.col(pair) + sizes[pair] * uniform(rows, -1, 1, random);
+  }
+  const auto found = near_relations(x, separate_columns(labels));
+  REQUIRE(found.size() == 3);
+  for (int pair = 0; pair < 3; ++pair) {
+    CAPTURE(pair);
+    const audit::RelationFinding& relation = found[static_cast<std::size_t>(pair)];
+    CHECK(relation.removable == std::vector<int>{pair, 60 + pair});
+    CHECK(std::abs(relation.terms[1].coefficient + 1) < 1e-2);
+  }
+}
