@@ -110,14 +110,20 @@ Ground computable_ground(const Audit& audit) {
   const std::string condition = audit.conditioning.known_digits < 1
                                     ? std::string("beyond what double precision can tell")
                                     : figure(audit.conditioning.condition_number);
-  return {grade,
-          fmt::format(
-              "{} {} {} of the 16 that double precision holds ({} {}; condition number of the "
-              "unit-length "
-              "columns {}); fewer than 6 is a caution, fewer than 3 a failure (our own choice).",
-              normal ? "Solving by the normal equations" : "Solving by QR", "keeps",
-              digits_in_words(kept), normal ? "QR would keep" : "the normal equations would keep",
-              digits_in_words(normal ? digits.qr : digits.normal_equations), condition)};
+  std::string finding = fmt::format(
+      "Solving by {} keeps {} of the 16 that double precision holds ({} would keep {}; condition "
+      "number of the unit-length columns {}); fewer than 6 is a caution, fewer than 3 a failure "
+      "(our own choice).",
+      normal ? "the normal equations" : "QR", digits_in_words(kept),
+      normal ? "QR" : "the normal equations",
+      digits_in_words(normal ? digits.qr : digits.normal_equations), condition);
+  if (grade != Grade::pass && centring_cures(audit)) {
+    finding +=
+        " The loss comes from powers and from columns far from zero, not from what competes: "
+        "centring the columns, or orthogonal polynomials, cures it and leaves the fitted "
+        "values as they are.";
+  }
+  return {grade, std::move(finding)};
 }
 
 Ground recorded_ground(const Audit& audit) {
@@ -140,6 +146,15 @@ Ground recorded_ground(const Audit& audit) {
                                    "recorded numbers (distance ratio; "
                                    "below 3 is a caution, below 1.4 a failure: our own choice).",
                                    figure(ratio))};
+}
+
+bool centring_cures(const Audit& audit) {
+  const Vector& indices = audit.between.indices;
+  if (audit.centred_by != CentredBy::column || indices.size() == 0) return false;
+  const double lost = std::log10(indices[indices.size() - 1]);
+  const bool normal = audit.solver == Solver::normal;
+  const double left = -std::log10(unit_roundoff) - (normal ? 2 : 1) * lost;
+  return left >= thresholds.digits_caution;
 }
 
 Overall overall_of(const Grounds& grounds) {

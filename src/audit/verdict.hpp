@@ -31,6 +31,11 @@ struct Thresholds {
 [[nodiscard]] Ground recorded_ground(const Audit& audit);
 [[nodiscard]] Ground informative_ground(const Audit& audit);
 
+/// Would the digits suffice if each family were orthogonal in itself and to the constant? The
+/// condition that is then left is the largest index between families; the change is one of
+/// parameters only, so the fitted values stay (Marquardt 1980).
+[[nodiscard]] bool centring_cures(const Audit& audit);
+
 /// singular, unreliable, fragile, guarded or sound.
 [[nodiscard]] Overall overall_of(const Grounds& grounds);
 

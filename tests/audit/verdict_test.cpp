@@ -76,6 +76,17 @@ TEST_CASE("computable: digits of the normal equations, or of QR where that is th
       computable_ground);
 }
 
+TEST_CASE("a loss of digits inside families comes with its remedy, one between families does not") {
+  Audit audit = plain_audit();
+  audit.conditioning.digits.normal_equations = 1;
+  CHECK(computable_ground(audit).finding.find("centring") != std::string::npos);
+  CHECK(verdict_of(audit, {}).summary.find("which centring the columns cures") !=
+        std::string::npos);
+  spread(audit, 1e6, 0.9, 0.9);
+  CHECK(computable_ground(audit).finding.find("centring") == std::string::npos);
+  CHECK(verdict_of(audit, {}).summary.find("centring") == std::string::npos);
+}
+
 TEST_CASE("recorded: distance ratio under both readings of whole numbers") {
   const auto ratios = [](double exact, double rounded) {
     return [=](Audit& audit) {
