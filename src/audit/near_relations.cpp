@@ -150,6 +150,20 @@ RelationFinding finding_of(const factor::Factor& factor, const design::Design& d
   return finding;
 }
 
+/// The column to be written as a combination of the others comes first: the one that pivoted QR
+/// takes last, since it adds least to them. Never the constant, which is written as a number.
+void put_explained_first(const factor::Factor& factor, const design::Design& design,
+                         std::vector<int>& columns) {
+  const std::vector<int> order =
+      factor::pivot_order(factor::unit_length(factor::select(factor, columns)));
+  const auto explained = std::find_if(order.rbegin(), order.rend(), [&](int at) {
+    const int column = columns[static_cast<std::size_t>(at)];
+    return !design.columns[static_cast<std::size_t>(column)].constant;
+  });
+  if (explained != order.rend())
+    std::swap(columns.front(), columns[static_cast<std::size_t>(*explained)]);
+}
+
 /// The smallest singular triplet (and the largest value) of the named columns with unit length.
 factor::Spectrum worst_direction(const factor::Factor& factor, const std::vector<int>& columns) {
   constexpr std::size_t all_at_once = 40;  // beyond, Lanczos is faster (tests/bench)
@@ -172,10 +186,7 @@ std::vector<RelationFinding> near_relations(const factor::Factor& factor,
     std::vector<int> columns = members(direction);
     if (columns.size() < 2) break;
     for (int& column : columns) column = remaining[static_cast<std::size_t>(column)];
-    // The constant is never the one that is explained: it is written as a number.
-    std::iter_swap(columns.begin(), std::find_if(columns.begin(), columns.end(), [&](int column) {
-                     return !design.columns[static_cast<std::size_t>(column)].constant;
-                   }));
+    put_explained_first(factor, design, columns);
     findings.push_back(finding_of(factor, design, columns, index));
     std::erase(remaining, columns.front());
     const factor::Spectrum next = worst_direction(factor, remaining);
