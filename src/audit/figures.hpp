@@ -60,11 +60,12 @@ namespace gramproof::audit {
 [[nodiscard]] Recording recording_of(const scan::Digest& digest, const std::vector<int>& kept,
                                      std::vector<Step> steps);
 
-/// Near relations of the kept columns, the worst first, at most `most`: while the scaled condition
-/// index is 30 or more, the columns with |v_j| >= 0.1 max|v| of the worst direction, the largest of
-/// them refitted on the others by least squares in the columns' own units; then that column is set
-/// aside and the rest is looked at again. Setting it aside keeps one relation from turning up in
-/// the next: two that are near each other in size have singular vectors that are mixtures of both.
+/// Near relations of the kept columns, the worst first, at most one for each scaled condition index
+/// of 30 or more and at most `most`: the columns with |v_j| >= 0.1 max|v| of the worst direction,
+/// of which the one that pivoted QR takes last is refitted on the others by least squares in the
+/// columns' own units; columns without which it fits as well are dropped. Then the explained column
+/// is set aside and the rest is looked at again: two relations that are near each other in size
+/// have singular vectors that are mixtures of both.
 [[nodiscard]] std::vector<RelationFinding> near_relations(const factor::Factor& factor,
                                                           const design::Design& design,
                                                           const std::vector<int>& kept,

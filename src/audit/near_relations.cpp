@@ -164,6 +164,37 @@ void put_explained_first(const factor::Factor& factor, const design::Design& des
     std::swap(columns.front(), columns[static_cast<std::size_t>(*explained)]);
 }
 
+/// Length of what the first column keeps beside the others.
+double residual_length(const factor::Factor& factor, const std::vector<int>& columns) {
+  std::vector<int> order(columns.begin() + 1, columns.end());
+  order.push_back(columns.front());
+  const Matrix r = factor::select(factor, order).r;
+  return std::abs(r(r.rows() - 1, r.cols() - 1));
+}
+
+/// Takes out the columns without which the rest fits as well: a singular vector also points a
+/// little along columns that have no part in the relation.
+void drop_bystanders(const factor::Factor& factor, std::vector<int>& columns) {
+  constexpr double as_well = 1.25;      // the residual may grow by a quarter: our own choice
+  constexpr std::size_t too_many = 40;  // each trial is a QR of its own
+  if (columns.size() > too_many) return;
+  const double whole = residual_length(factor, columns);
+  while (columns.size() > 2) {
+    double least = std::numeric_limits<double>::infinity();
+    std::vector<int> shortest;
+    for (std::size_t i = 1; i < columns.size(); ++i) {
+      std::vector<int> without = columns;
+      without.erase(without.begin() + static_cast<std::ptrdiff_t>(i));
+      const double length = residual_length(factor, without);
+      if (length >= least) continue;
+      least = length;
+      shortest = std::move(without);
+    }
+    if (!(least <= as_well * whole)) return;
+    columns = std::move(shortest);
+  }
+}
+
 /// The smallest singular triplet (and the largest value) of the named columns with unit length.
 factor::Spectrum worst_direction(const factor::Factor& factor, const std::vector<int>& columns) {
   constexpr std::size_t all_at_once = 40;  // beyond, Lanczos is faster (tests/bench)
@@ -179,6 +210,8 @@ std::vector<RelationFinding> near_relations(const factor::Factor& factor,
                                             const Conditioning& conditioning, std::size_t most) {
   std::vector<RelationFinding> findings;
   std::vector<int> remaining = kept;
+  const auto strong = (conditioning.condition_indices.array() >= told_from).count();
+  most = std::min(most, static_cast<std::size_t>(strong));
   const Index last = conditioning.condition_indices.size() - 1;
   double index = conditioning.condition_indices[last];
   Vector direction = conditioning.right_vectors.col(last);
@@ -187,6 +220,7 @@ std::vector<RelationFinding> near_relations(const factor::Factor& factor,
     if (columns.size() < 2) break;
     for (int& column : columns) column = remaining[static_cast<std::size_t>(column)];
     put_explained_first(factor, design, columns);
+    drop_bystanders(factor, columns);
     findings.push_back(finding_of(factor, design, columns, index));
     std::erase(remaining, columns.front());
     const factor::Spectrum next = worst_direction(factor, remaining);
