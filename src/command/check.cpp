@@ -5,9 +5,13 @@
 
 #include <algorithm>
 #include <cstdlib>
+#include <filesystem>
+#include <optional>
 #include <string>
+#include <vector>
 
 #include "audit/run.hpp"
+#include "base/text.hpp"
 #include "command/check_options.hpp"
 #include "command/exit_status.hpp"
 #include "command/option_table.hpp"
@@ -47,7 +51,41 @@ int status_of(const audit::Verdict& verdict, const CheckOptions& options) {
   return repaired ? good_enough : not_good_enough;
 }
 
+/// The file of the same folder that was probably meant.
+std::string near_file(const std::string& file) {
+  const std::filesystem::path path = file;
+  std::error_code fault;
+  std::vector<std::string> names;
+  for (std::filesystem::directory_iterator
+           entry(path.has_parent_path() ? path.parent_path() : ".", fault),
+       end;
+       !fault && entry != end; entry.increment(fault)) {
+    names.push_back(entry->path().filename().string());
+  }
+  const std::optional<std::string> near = nearest_name(path.filename().string(), names);
+  return near ? "did you mean " + (path.parent_path() / *near).string() + "?" : "";
+}
+
+/// Says of a file that does not exist what may have been meant.
+Result<void> check_files(const std::vector<std::string>& files) {
+  for (const std::string& file : files) {
+    std::error_code fault;
+    if (file.empty()) {
+      return Error{ErrorKind::usage, "", "the name of a data file is empty",
+                   "gramproof check FILE... ; - is standard input"};
+    }
+    if (file == "-" || std::filesystem::exists(file, fault) || fault) continue;
+    // Nobody looks for a file called 'constant, age'.
+    const bool design = file.find_first_of(",([*^") != std::string::npos;
+    return Error{
+        ErrorKind::io, file, "no such file",
+        design ? "a design stands behind --design: --design '" + file + "'" : near_file(file)};
+  }
+  return {};
+}
+
 Result<audit::Audit> run_audit(CheckOptions& options) {
+  if (Result<void> exist = check_files(options.files); !exist) return exist.error();
   Result<table::Source> source = table::Source::open(options.files, options.reading);
   if (!source) return source.error();
   ProgressLine progress(!options.quiet);

@@ -26,7 +26,7 @@ struct CheckOptions {
 };
 
 /// Arguments after `check`. Errors: unknown options (with the nearest), missing or impossible
-/// values, no file. --design-file is read here.
-[[nodiscard]] Result<CheckOptions> parse_check(std::vector<std::string> arguments);
+/// values, no file, a file that cannot be written. --design-file is read here.
+[[nodiscard]] Result<CheckOptions> parse_check(const std::vector<std::string>& arguments);
 
 }  // namespace gramproof::command

@@ -5,16 +5,15 @@
 #include <unistd.h>
 
 #include <cerrno>
-#include <climits>
-#include <cstdlib>
 #include <cstring>
-#include <memory>
+#include <filesystem>
+#include <optional>
 
 namespace gramproof::command {
 namespace {
 
-Error io_error(const std::string& path, const std::string& doing) {
-  return {ErrorKind::io, path, doing + ": " + std::strerror(errno), ""};
+Error io_error(const std::string& path, const std::string& doing, const std::string& hint = "") {
+  return {ErrorKind::io, path, doing + ": " + std::strerror(errno), hint};
 }
 
 /// Writes all bytes; false with errno set.
@@ -29,11 +28,38 @@ bool write_all(int descriptor, const std::string& bytes) {
   return true;
 }
 
-/// The file a path means once links are followed; the path itself where nothing exists yet.
+/// The number of the descriptor a path stands for: opened anew, /dev/stdout would be written from
+/// its start, over what is there.
+std::optional<int> descriptor_of(const std::string& path) {
+  if (path == "/dev/stdout") return STDOUT_FILENO;
+  if (path == "/dev/stderr") return STDERR_FILENO;
+  for (const std::string folder : {"/dev/fd/", "/proc/self/fd/"}) {
+    if (path.rfind(folder, 0) != 0) continue;
+    const std::string digits = path.substr(folder.size());
+    if (digits.empty() || digits.size() > 6 ||
+        digits.find_first_not_of("0123456789") != std::string::npos)
+      return std::nullopt;
+    return std::stoi(digits);
+  }
+  return std::nullopt;
+}
+
+/// The file a path means once links are followed, also where the last one leads to nothing yet.
 std::string resolved(const std::string& path) {
-  const std::unique_ptr<char, decltype(&std::free)> real(::realpath(path.c_str(), nullptr),
-                                                         &std::free);
-  return real ? std::string(real.get()) : path;
+  constexpr int most_links = 40;  // as many as Linux follows
+  std::filesystem::path file = path;
+  std::error_code fault;
+  for (int i = 0; i < most_links && std::filesystem::is_symlink(file, fault); ++i) {
+    const std::filesystem::path next = std::filesystem::read_symlink(file, fault);
+    if (fault) break;
+    file = next.is_absolute() ? next : file.parent_path() / next;
+  }
+  return file.string();
+}
+
+std::string folder_of(const std::string& path) {
+  const std::string folder = std::filesystem::path(path).parent_path().string();
+  return folder.empty() ? "." : folder;
 }
 
 Result<void> write_directly(const std::string& path, const std::string& bytes) {
@@ -47,11 +73,16 @@ Result<void> write_directly(const std::string& path, const std::string& bytes) {
   return {};
 }
 
-Result<void> write_and_rename(const std::string& path, const std::string& bytes, mode_t mode) {
+/// `kept` are the permissions of the file that is replaced, if there is one; a new file gets what
+/// the user's mask leaves.
+Result<void> write_and_rename(const std::string& path, const std::string& bytes,
+                              std::optional<mode_t> kept) {
   const std::string temporary = path + ".part-" + std::to_string(::getpid());
-  const int descriptor = ::open(temporary.c_str(), O_WRONLY | O_CREAT | O_EXCL | O_CLOEXEC, mode);
+  const int descriptor =
+      ::open(temporary.c_str(), O_WRONLY | O_CREAT | O_EXCL | O_CLOEXEC, kept.value_or(0666));
   if (descriptor < 0) return io_error(path, "cannot be created");
-  bool good = write_all(descriptor, bytes) && ::fsync(descriptor) == 0;
+  bool good = (!kept || ::fchmod(descriptor, *kept) == 0) && write_all(descriptor, bytes) &&
+              ::fsync(descriptor) == 0;
   int fault = errno;
   if (::close(descriptor) != 0 && good) {
     good = false;
@@ -69,16 +100,38 @@ Result<void> write_and_rename(const std::string& path, const std::string& bytes,
 
 }  // namespace
 
-Result<void> write_file(const std::string& path, const std::string& bytes) {
+Result<void> can_be_written(const std::string& path) {
+  if (descriptor_of(path)) return {};
   const std::string target = resolved(path);
   struct stat status {};
-  if (::stat(target.c_str(), &status) != 0) return write_and_rename(target, bytes, 0666);
-  if (S_ISDIR(status.st_mode)) {
-    errno = EISDIR;
+  if (::stat(target.c_str(), &status) == 0) {
+    if (S_ISDIR(status.st_mode)) {
+      return Error{ErrorKind::io, path, "this is a directory", "name a file in it"};
+    }
+    if (::access(target.c_str(), W_OK) != 0) return io_error(path, "cannot be written");
+    if (!S_ISREG(status.st_mode)) return {};
+  }
+  const std::string folder = folder_of(target);
+  if (::stat(folder.c_str(), &status) != 0 || !S_ISDIR(status.st_mode)) {
+    return Error{ErrorKind::io, path, "there is no folder " + folder,
+                 "make it first, or name another file"};
+  }
+  if (::access(folder.c_str(), W_OK | X_OK) != 0) {
+    return io_error(path, "no file can be made in " + folder, "name another file");
+  }
+  return {};
+}
+
+Result<void> write_file(const std::string& path, const std::string& bytes) {
+  if (const std::optional<int> descriptor = descriptor_of(path)) {
+    if (write_all(*descriptor, bytes) || errno == EPIPE) return {};
     return io_error(path, "cannot be written");
   }
+  if (Result<void> writable = can_be_written(path); !writable) return writable;
+  const std::string target = resolved(path);
+  struct stat status {};
+  if (::stat(target.c_str(), &status) != 0) return write_and_rename(target, bytes, std::nullopt);
   if (!S_ISREG(status.st_mode)) return write_directly(target, bytes);
-  if (::access(target.c_str(), W_OK) != 0) return io_error(path, "cannot be written");
   return write_and_rename(target, bytes, status.st_mode & 0777);
 }
 
