@@ -67,6 +67,11 @@ Result<std::vector<std::pair<int, double>>> steps_given(const Request& request,
       return Error{ErrorKind::usage, "--recorded", "no column \"" + given.column + "\" in the data",
                    near ? "did you mean \"" + *near + "\"?" : ""};
     }
+    if (schema.columns[*column].kind == table::ColumnKind::text) {
+      return Error{ErrorKind::usage, "--recorded",
+                   "\"" + given.column + "\" is a text column, which is not rounded",
+                   "only columns of numbers have a step"};
+    }
     steps.emplace_back(static_cast<int>(*column), given.step);
   }
   return steps;
@@ -211,9 +216,10 @@ Result<Bound> scan_design(table::Source& source, const Request& request) {
   if (!schema) return schema.error();
   const std::string data_name =
       source.files().size() == 1 ? source.files().front().name : "the data";
-  Result<design::Design> provisional =
-      design::bind(*syntax.value(), request.design, schema.value(), data_name,
-                   most_columns(request.memory, request.threads));
+  Result<design::Design> provisional = design::bind(
+      *syntax.value(), request.design, schema.value(), data_name,
+      most_columns(request.memory, request.threads),
+      [&request](std::uint64_t columns) { return memory_needed(columns, request.threads); });
   if (!provisional) return provisional.error();
   const scan::PassOptions pass{request.threads, progress_of(request, "folding rows")};
   Result<scan::Digest> digest = scan::scan(source, schema.value(), provisional.value(), pass);

@@ -52,7 +52,7 @@ std::string on_one_line(const std::string& text) {
 class Build {
  public:
   Build(const Syntax& syntax, const Request& request, const table::Schema& schema,
-        const std::string& data_name, std::size_t most_columns)
+        const std::string& data_name, std::size_t most_columns, const BytesNeeded& bytes_needed)
       : syntax_(syntax),
         request_(request),
         schema_(schema),
@@ -60,6 +60,7 @@ class Build {
         condition_(schema, data_name, syntax.rows, true),
         sets_(binder_, design_),
         most_columns_(most_columns),
+        bytes_needed_(bytes_needed),
         has_part_(schema.columns.size(), false) {}
 
   Result<Design> run() {
@@ -138,8 +139,18 @@ class Build {
                   "with this term the design has " +
                       (beyond ? "more than 2^64" : grouped(columns_)) +
                       " columns; the memory is enough for " + grouped(most_columns_),
-                  "--memory sets how much may be used"});
+                  memory_advice(beyond)});
     return false;
+  }
+
+  /// What --memory would have to be for the columns so far. Beyond a million columns (terabytes) no
+  /// figure helps.
+  std::string memory_advice(bool beyond) const {
+    constexpr std::uint64_t most_said = std::uint64_t{1} << 20;
+    if (beyond || !bytes_needed_ || columns_ > most_said)
+      return "--memory sets how much may be used";
+    const std::uint64_t megabytes = (bytes_needed_(columns_) >> 20) + 1;
+    return "that many need --memory " + std::to_string(megabytes) + "MB";
   }
 
   void make_terms(std::vector<SetOfColumns>& made) {
@@ -214,6 +225,7 @@ class Build {
   SetMaker sets_;
   std::uint64_t columns_ = 0;
   std::uint64_t most_columns_;
+  const BytesNeeded& bytes_needed_;
   std::vector<bool> has_part_;  ///< table columns that are used: `rest` does not take them, their
                                 ///< cells must be present
   std::unordered_map<std::string, std::size_t> term_of_label_;
@@ -222,8 +234,9 @@ class Build {
 }  // namespace
 
 Result<Design> bind(const Syntax& syntax, const Request& request, const table::Schema& schema,
-                    const std::string& data_name, std::size_t most_columns) {
-  return Build(syntax, request, schema, data_name, most_columns).run();
+                    const std::string& data_name, std::size_t most_columns,
+                    const BytesNeeded& bytes_needed) {
+  return Build(syntax, request, schema, data_name, most_columns, bytes_needed).run();
 }
 
 }  // namespace gramproof::design

@@ -7,6 +7,7 @@
 #pragma once
 
 #include <cstdint>
+#include <functional>
 #include <memory>
 #include <string>
 #include <utility>
@@ -41,14 +42,17 @@ struct Syntax;  // parse tree with places; opaque to others
 /// survey even if numeric.
 [[nodiscard]] std::vector<std::string> columns_with_levels(const Syntax& syntax);
 
+using BytesNeeded = std::function<std::uint64_t(std::uint64_t columns)>;
+
 /// Most design columns bind() may make: a larger design is refused with the count and --memory in
 /// the message. The level named by `against` gives no provisional column. Errors: unknown names and
 /// levels (with the nearest), text where a number is needed, sets in arithmetic other than
 /// products, one label twice, a column spoiled for `rest`, a number out of range, too many columns;
-/// the first one met is returned. O(columns made * nodes).
+/// the first one met is returned. `bytes_needed` of a number of columns, if given, lets the message
+/// say what --memory would do. O(columns made * nodes).
 [[nodiscard]] Result<Design> bind(const Syntax& syntax, const Request& request,
                                   const table::Schema& schema, const std::string& data_name,
-                                  std::size_t most_columns);
+                                  std::size_t most_columns, const BytesNeeded& bytes_needed = {});
 
 /// Rows used by level: counts[s][i] belongs to level i (index into ColumnFacts::levels) of
 /// design.level_sets[s].

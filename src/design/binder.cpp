@@ -1,5 +1,6 @@
 #include "design/binder.hpp"
 
+#include <algorithm>
 #include <utility>
 
 #include "base/text.hpp"
@@ -48,13 +49,26 @@ std::string did_you_mean(const std::string& word, const std::vector<std::string>
   return nearest ? "did you mean " + in_quotes(*nearest) + "?" : "";
 }
 
+std::string known_names(const std::string& word, const std::string& kind,
+                        const std::vector<std::string>& names) {
+  constexpr std::size_t most_listed = 6;
+  const std::string near = did_you_mean(word, names);
+  if (!near.empty() || names.empty()) return near;
+  std::string list = kind + ": ";
+  for (std::size_t i = 0; i < std::min(names.size(), most_listed); ++i) {
+    list += (i == 0 ? "" : ", ") + quoted_if_needed(names[i]);
+  }
+  if (names.size() > most_listed) list += " and " + grouped(names.size() - most_listed) + " more";
+  return list;
+}
+
 Result<int> find_column(const table::Schema& schema, const std::string& data_name,
                         const std::string& where, const std::string& name) {
   if (const auto found = schema.find(name)) return static_cast<int>(*found);
   std::vector<std::string> names;
   for (const table::ColumnFacts& facts : schema.columns) names.push_back(facts.name);
   return Error{ErrorKind::design, where, "no column " + in_quotes(name) + " in " + data_name,
-               did_you_mean(name, names)};
+               known_names(name, "its columns", names)};
 }
 
 Binder::Binder(const table::Schema& schema, std::string data_name, const SourceText& source,
@@ -103,7 +117,7 @@ int Binder::level(int column, const Word& word) {
     texts.push_back(level.text);
   }
   fail(word.at, "no level " + in_quotes(word.text) + " in column " + in_quotes(known.name),
-       did_you_mean(word.text, texts));
+       known_names(word.text, "its levels", texts));
   return -1;
 }
 

@@ -65,4 +65,8 @@ class Binder {
 [[nodiscard]] std::string did_you_mean(const std::string& word,
                                        const std::vector<std::string>& candidates);
 
+/// The same, or the first of the names under `kind` when none is near: `its levels: north, south`.
+[[nodiscard]] std::string known_names(const std::string& word, const std::string& kind,
+                                      const std::vector<std::string>& names);
+
 }  // namespace gramproof::design

@@ -1,6 +1,7 @@
 #include "table/source.hpp"
 
 #include <algorithm>
+#include <string_view>
 #include <utility>
 
 #include <fmt/format.h>
@@ -44,6 +45,25 @@ std::string separator_words(char separator) {
   }
 }
 
+/// A separator given by hand that the header does not have, where the first two lines agree on
+/// another one: the data would be a single column of text, which `rest` leaves out.
+Result<void> check_separator(const std::string& file, const std::vector<std::string>& names,
+                             std::string_view sample, bool whole, const ReadOptions& options) {
+  if (!options.separator || names.size() > 1) return {};
+  ReadOptions unsaid = options;
+  unsaid.separator.reset();
+  const char other = recognise_dialect(sample, whole, unsaid).separator;
+  const std::size_t line_end = std::min(sample.find('\n'), sample.size());
+  const std::string_view second = sample.substr(std::min(line_end + 1, sample.size()));
+  const bool agree = sample.substr(0, line_end).find(other) != std::string_view::npos &&
+                     second.substr(0, second.find('\n')).find(other) != std::string_view::npos;
+  if (other == *options.separator || !agree) return {};
+  return Error{ErrorKind::data, fmt::format("{}:1", file),
+               fmt::format("the header is not separated by {}, but seemingly by {}",
+                           separator_words(*options.separator), separator_words(other)),
+               "leave --separator out, or give another one"};
+}
+
 /// Reads the header of file `index` and appends its layout; the first file decides names and
 /// dialect.
 Result<void> open_header(Source::State& state, std::size_t index, const ReadOptions& options) {
@@ -62,6 +82,9 @@ Result<void> open_header(Source::State& state, std::size_t index, const ReadOpti
   if (!header) return header.error();
   auto names = read_header(stored.name(), header.value().bytes, state.separator);
   if (!names) return names.error();
+  Result<void> separated = check_separator(stored.name(), names.value(), sample.value(),
+                                           splitter.value().at_end(), options);
+  if (!separated) return separated.error();
   if (index == 0) state.column_names = names.value();
   auto columns =
       match_header(stored.name(), names.value(), state.files.front().name, state.column_names);

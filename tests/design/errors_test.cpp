@@ -16,11 +16,15 @@ struct Case {
 const std::vector<Case> cases = {
     {"unknown column", "constant, age,incme",
      "--design:15: no column \"incme\" in harbour.csv (did you mean \"income\"?)"},
-    {"nothing near", "zzzzzz", "--design:1: no column \"zzzzzz\" in harbour.csv"},
+    {"nothing near", "zzzzzz",
+     "--design:1: no column \"zzzzzz\" in harbour.csv (its columns: age, income, \"net income\", "
+     "region, town, grade and 3 more)"},
     {"characters, not bytes", "\"\xC3\xBC\", age",
-     "--design:1: no column \"\xC3\xBC\" in harbour.csv"},
+     "--design:1: no column \"\xC3\xBC\" in harbour.csv (its columns: age, income, \"net income\", "
+     "region, town, grade and 3 more)"},
     {"place after a wide character", "[town = \"\xC3\xBC\"]",
-     "--design:9: no level \"\xC3\xBC\" in column \"town\""},
+     "--design:9: no level \"\xC3\xBC\" in column \"town\" (its levels: \"North East\", Bay, \"Old "
+     "\"\"Quay\"\"\")"},
     {"empty", " ", "--design:2: the design is empty"},
     {"comma at the end", "age,", "--design:5: a term is expected before the end of the text"},
     {"two commas", "age,,income", "--design:5: a term is expected before `,`"},
@@ -91,7 +95,9 @@ const std::vector<Case> cases = {
      "quoted)"},
     {"text beside a number", "[region = column(\"age\")]",
      "--design:11: \"region\" is a text column, \"age\" a numeric one: they cannot be compared"},
-    {"a column beside numbers", "[age = nrth]", "--design:8: no column \"nrth\" in harbour.csv"},
+    {"a column beside numbers", "[age = nrth]",
+     "--design:8: no column \"nrth\" in harbour.csv (its columns: age, income, \"net income\", "
+     "region, town, grade and 3 more)"},
     {"sum of sets", "levels(region) + levels(grade)",
      "--design:1: a set of columns stands where one column is needed (sets are terms of their own "
      "or parts of a product)"},
