@@ -165,10 +165,27 @@ std::vector<std::pair<std::string, audit::Overall>> levels() {
   return words;
 }
 
+/// A regular file that is read must not be replaced by the verdict on it.
+Result<void> apart_from_input(const CheckOptions& options, const std::string& design_file) {
+  std::vector<std::string> inputs = options.files;
+  inputs.push_back(design_file);
+  for (const std::string& input : inputs) {
+    std::error_code fault;
+    if (!std::filesystem::is_regular_file(input, fault)) continue;
+    if (std::filesystem::equivalent(input, options.json, fault)) {
+      return Error{ErrorKind::usage, "--json", options.json + " is read, and would be replaced",
+                   "name another file"};
+    }
+  }
+  return {};
+}
+
 Result<void> fill_output(const Arguments& given, CheckOptions& options) {
   options.json = given.value("json");
   if (given.has("json") && options.json != "-") {
     if (Result<void> writable = can_be_written(options.json); !writable) return writable.error();
+    if (Result<void> apart = apart_from_input(options, given.value("design-file")); !apart)
+      return apart.error();
   }
   options.quiet = given.has("quiet");
   Result<audit::Overall> accept =

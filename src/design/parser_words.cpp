@@ -20,15 +20,9 @@ constexpr FunctionWord function_words[] = {
     {"max", Function::maximum, 2, 64}, {"hinge", Function::hinge, 2, 2},
 };
 
-/// Words whose columns are not built: what they wait for.
-constexpr std::pair<std::string_view, std::string_view> words_to_come[] = {
-    {"lag", "survey and panel data"},
-    {"difference", "survey and panel data"},
-    {"effects", "survey and panel data"},
-    {"year", "dates"},
-    {"month", "dates"},
-    {"day_number", "dates"},
-};
+/// Words of the language whose columns are not built.
+constexpr std::string_view words_to_come[] = {"lag",  "difference", "effects",
+                                              "year", "month",      "day_number"};
 
 }  // namespace
 
@@ -139,9 +133,10 @@ Node Parser::reserved_word() {
     return fail(node.at, "`" + taken + "` is a word of the design language",
                 "a column of that name is written " + in_quotes(taken));
   }
-  for (const auto& [coming, with] : words_to_come) {
+  for (const std::string_view coming : words_to_come) {
     if (taken != coming) continue;
-    return fail(node.at, "not built yet: `" + taken + "` comes with " + std::string(with));
+    return fail(node.at, "`" + taken + "` is not built yet",
+                "make the column beforehand and name it here");
   }
   if (!enter(node.at)) return {};
   for (const FunctionWord& known : function_words) {

@@ -3,6 +3,7 @@
 #include <unistd.h>
 
 #include "mistakes.hpp"
+#include "small_tables.hpp"
 
 namespace gramproof::test {
 namespace {
@@ -119,6 +120,12 @@ const std::vector<Mistake> outputs = {
     {"file for a folder",
      {"check", "plain.csv", "--json", "plain.csv/verdict.json"},
      "plain.csv/verdict.json: there is no folder plain.csv (make it first, or name another file)"},
+    {"the data",
+     {"check", "plain.csv", "--json", "plain.csv"},
+     "--json: plain.csv is read, and would be replaced (name another file)"},
+    {"the design",
+     {"check", "plain.csv", "--design-file", "design.txt", "--json", "./design.txt"},
+     "--json: ./design.txt is read, and would be replaced (name another file)"},
     {"an option for a file",
      {"check", "plain.csv", "--json", "--quiet"},
      "--json: a value must follow this option (written --json FILE)"},
@@ -143,6 +150,7 @@ TEST_CASE("a JSON file that cannot be written is refused before the audit") {
     CAPTURE(mistake.why);
     check_line(run_program(folder, mistake.arguments), mistake.line);
     CHECK(names_in(folder) == before);
+    CHECK(bytes_of(folder.path() / "plain.csv") == plain_table());
   }
 }
 

@@ -117,7 +117,7 @@ const std::vector<Mistake> names_and_files = {
      "--design:5: `,` is expected before `=` (comparisons stand in brackets, as in [age >= 65])"},
     {"not built yet",
      {"check", "harbour.csv", "--design", "constant, lag(age, 1)"},
-     "--design:11: not built yet: `lag` comes with survey and panel data"},
+     "--design:11: `lag` is not built yet (make the column beforehand and name it here)"},
     {"column twice",
      {"check", "harbour.csv", "--design", "age, income, age"},
      "--design:14: the column age is already made by the term at --design:1 (leave one of them "

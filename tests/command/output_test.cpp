@@ -1,10 +1,13 @@
 // What is written, where, and that it is whole.
 #include <doctest/doctest.h>
 #include <fcntl.h>
+#include <stdlib.h>
 #include <sys/stat.h>
+#include <unistd.h>
 #include <zlib.h>
 #include <zstd.h>
 
+#include <array>
 #include <nlohmann/json.hpp>
 #include <thread>
 
@@ -32,6 +35,33 @@ nlohmann::json verdict_of(const std::string& bytes) {
   const nlohmann::json document = nlohmann::json::parse(bytes, nullptr, false);
   REQUIRE(document.is_object());
   return document.at("verdict");
+}
+
+/// Output of a run whose standard output is a terminal.
+std::string shown_on_terminal(const Scratch& folder, const std::vector<std::string>& arguments,
+                              Setting setting) {
+  const int terminal = ::posix_openpt(O_RDWR | O_NOCTTY | O_CLOEXEC);
+  REQUIRE(terminal >= 0);
+  REQUIRE(::grantpt(terminal) == 0);
+  REQUIRE(::unlockpt(terminal) == 0);
+  setting.output_file = ::ptsname(terminal);
+  // Held open, so that the reader waits for the program instead of finding nobody there.
+  const int held = ::open(setting.output_file.c_str(), O_RDWR | O_NOCTTY | O_CLOEXEC);
+  REQUIRE(held >= 0);
+  std::string shown;
+  std::thread reader([&] {
+    std::array<char, 4096> buffer{};
+    ssize_t got = 0;
+    while ((got = ::read(terminal, buffer.data(), buffer.size())) > 0)
+      shown.append(buffer.data(), static_cast<std::size_t>(got));
+  });
+  const Run run = run_program(folder, arguments, setting);
+  ::close(held);  // the reader meets the end once nobody has the terminal
+  reader.join();
+  ::close(terminal);
+  CAPTURE(run);
+  CHECK(run.status == 0);
+  return shown;
 }
 
 }  // namespace
@@ -210,6 +240,18 @@ TEST_CASE("colour") {
   CHECK_FALSE(escapes("never", {}));
   CHECK_FALSE(escapes("auto", {}));
   CHECK_FALSE(escapes("auto", plain));
+  const auto on_terminal = [&](const std::string& when, const Setting& setting) {
+    const std::string shown =
+        shown_on_terminal(folder, {"check", "plain.csv", "--colour", when}, setting);
+    CHECK(shown.find("Sound") != std::string::npos);
+    return shown.find('\x1b') != std::string::npos;
+  };
+  Setting unsaid;
+  unsaid.environment = {"NO_COLOR="};  // set to nothing, it asks for nothing
+  CHECK(on_terminal("auto", {}));
+  CHECK(on_terminal("auto", unsaid));
+  CHECK_FALSE(on_terminal("auto", plain));
+  CHECK_FALSE(on_terminal("never", {}));
 }
 
 TEST_CASE("the same question gives the same bytes on any number of threads") {
