@@ -121,6 +121,10 @@ Result<void> fill_recorded(const Arguments& given, audit::Request& request) {
       }
       recorded.step = number.value;
     }
+    for (const audit::RecordedStep& earlier : request.recorded) {
+      if (earlier.column == recorded.column)
+        return usage("recorded", "\"" + recorded.column + "\" is given twice", "give it once");
+    }
     request.recorded.push_back(recorded);
   }
   return {};

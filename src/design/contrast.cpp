@@ -148,9 +148,9 @@ class Contrast {
       }
       written = definition ? canonical_text(*definition, schema_) : "constant";
     }
-    const std::string hint = node.kind == NodeKind::divide
-                                 ? "a fraction is written as a factor, as in 0.5*age"
-                                 : did_you_mean(written, labels);
+    std::string hint = did_you_mean(written, labels);
+    if (hint.empty()) hint = "write it as the design or the report does";
+    if (node.kind == NodeKind::divide) hint = "a fraction is written as a factor, as in 0.5*age";
     error_ =
         source_.error(node.at, "no column of the design is called " + in_quotes(written), hint);
   }

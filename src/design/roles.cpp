@@ -49,8 +49,9 @@ Error unknown(const Design& design, const std::string& option, const std::string
   if (empty_term)
     return {ErrorKind::design, option, "the term " + name + " gives no column on the rows used",
             ""};
+  const std::string near = did_you_mean(name, names);
   return {ErrorKind::design, option, "no column or term of the design is called " + in_quotes(name),
-          did_you_mean(name, names)};
+          near.empty() ? "write it as the design or the report does" : near};
 }
 
 Result<void> assign(Design& design, const std::string& option,

@@ -104,6 +104,9 @@ const std::vector<Mistake> command_line = {
     {"step without number",
      {"check", "harbour.csv", "--recorded", "age"},
      "--recorded: \"age\" is not COLUMN=STEP (for example --recorded age=1 or age=exact)"},
+    {"two steps",
+     {"check", "harbour.csv", "--recorded", "age=1", "--recorded", "\"age\"=exact"},
+     "--recorded: \"age\" is given twice (give it once)"},
     {"step of nothing",
      {"check", "harbour.csv", "--recorded", "age=0"},
      "--recorded: \"0\" is neither a positive number nor exact (for example --recorded age=1 or "

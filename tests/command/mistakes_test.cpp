@@ -86,6 +86,15 @@ const std::vector<Mistake> names_and_files = {
     {"protect",
      {"check", "harbour.csv", "--protect", "incme"},
      "--protect: no column or term of the design is called \"incme\" (did you mean \"income\"?)"},
+    {"focus on a control left out",
+     {"check", "harbour.csv", "--design", "constant, age", "--focus", "income"},
+     "--focus: no column or term of the design is called \"income\" (write it as the design or the "
+     "report does)"},
+    {"contrast of what is not there",
+     {"check", "harbour.csv", "--design", "constant, age", "--contrast", "age", "--contrast",
+      "age + income"},
+     "--contrast:7: no column of the design is called \"income\" (write it as the design or the "
+     "report does)"},
     {"contrast",
      {"check", "harbour.csv", "--contrast", "80*agee"},
      "--contrast:4: no column of the design is called \"agee\" (did you mean \"age\"?)"},

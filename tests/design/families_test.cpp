@@ -152,7 +152,8 @@ TEST_CASE("roles by label or term") {
   CHECK(to_line(design::assign_roles(design, {"aeg"}, {}).error()) ==
         "--focus: no column or term of the design is called \"aeg\" (did you mean \"age\"?)");
   CHECK(to_line(design::assign_roles(design, {}, {"income"}).error()) ==
-        "--protect: no column or term of the design is called \"income\"");
+        "--protect: no column or term of the design is called \"income\" (write it as the design "
+        "or the report does)");
 }
 
 namespace {
@@ -211,7 +212,9 @@ TEST_CASE("errors of contrasts") {
   REQUIRE(design);
   const std::vector<std::pair<std::string, std::string>> errors = {
       {"aeg", "--contrast:1: no column of the design is called \"aeg\" (did you mean \"age\"?)"},
-      {"age + income", "--contrast:7: no column of the design is called \"income\""},
+      {"age + income",
+       "--contrast:7: no column of the design is called \"income\" (write it as the design or the "
+       "report does)"},
       {"age + 3",
        "--contrast:7: a number stands here without a column of the design (as in age + 80*age^2)"},
       {"age + 2*age", "--contrast:9: age stands here twice (join its two numbers into one)"},
