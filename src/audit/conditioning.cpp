@@ -166,6 +166,9 @@ Conditioning conditioning_of(const factor::Factor& factor, const std::vector<int
       2 * (factor::log10_abs_determinant(own.r) + exponents * std::log10(2.0));
   result.log10_determinant_correlation =
       correlation_determinant(factor, kept, is_constant, correlation_singular);
+  for (const int position : factor::pivot_order(scaled)) {
+    result.pivot_order.push_back(kept[static_cast<std::size_t>(position)]);
+  }
   result.digits = digits_of(result.condition_number);
   result.known_digits = known_digits(columns, result.condition_number);
   result.known_digits_raw = known_digits(columns, result.raw_condition_number);

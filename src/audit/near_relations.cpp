@@ -150,20 +150,6 @@ RelationFinding finding_of(const factor::Factor& factor, const design::Design& d
   return finding;
 }
 
-/// The column to be written as a combination of the others comes first: the one that pivoted QR
-/// takes last, since it adds least to them. Never the constant, which is written as a number.
-void put_explained_first(const factor::Factor& factor, const design::Design& design,
-                         std::vector<int>& columns) {
-  const std::vector<int> order =
-      factor::pivot_order(factor::unit_length(factor::select(factor, columns)));
-  const auto explained = std::find_if(order.rbegin(), order.rend(), [&](int at) {
-    const int column = columns[static_cast<std::size_t>(at)];
-    return !design.columns[static_cast<std::size_t>(column)].constant;
-  });
-  if (explained != order.rend())
-    std::swap(columns.front(), columns[static_cast<std::size_t>(*explained)]);
-}
-
 /// Length of what the first column keeps beside the others.
 double residual_length(const factor::Factor& factor, const std::vector<int>& columns) {
   std::vector<int> order(columns.begin() + 1, columns.end());
@@ -219,7 +205,10 @@ std::vector<RelationFinding> near_relations(const factor::Factor& factor,
     std::vector<int> columns = members(direction);
     if (columns.size() < 2) break;
     for (int& column : columns) column = remaining[static_cast<std::size_t>(column)];
-    put_explained_first(factor, design, columns);
+    // The constant is never the one that is explained: it is written as a number.
+    std::iter_swap(columns.begin(), std::find_if(columns.begin(), columns.end(), [&](int column) {
+                     return !design.columns[static_cast<std::size_t>(column)].constant;
+                   }));
     drop_bystanders(factor, columns);
     findings.push_back(finding_of(factor, design, columns, index));
     std::erase(remaining, columns.front());

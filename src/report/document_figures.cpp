@@ -28,6 +28,7 @@ Json conditioning_part(const audit::Audit& audit) {
   put_number(part, "condition_number", conditioning.condition_number);
   put_numbers(part, "condition_indices", conditioning.condition_indices);
   part["proportions"] = Json::array();
+  part["pivot_order"] = labels_of(audit, conditioning.pivot_order);
   part["proportions_rows"] = Json::array();
   for (const int row : conditioning.proportions_rows) {
     if (row < 0 || row >= conditioning.proportions.rows()) continue;

@@ -88,18 +88,18 @@ TEST_CASE("exact relations: found, named, and what is left out") {
       {"all_levels beside the constant",
        panel(300, 2),
        "constant, all_levels(sector)",
-       "[sector = fish] + [sector = slate] + [sector = wool] = 1",
+       "[sector = fish] + [sector = slate] + [sector = wool] = constant",
        "level_set",
        {}},
       {"age, period and cohort",
-       rows("age,year,birth", 200, 3,
+       rows("age,period,birth", 200, 3,
             [&](int, Random& random) {
               const int year = static_cast<int>(random.whole(2001, 2012)),
                         age = static_cast<int>(random.whole(16, 80));
               return three(age, year, year - age);
             }),
-       "constant, age, year, birth",
-       "age + birth = year",
+       "constant, age, period, birth",
+       "age + birth = period",
        "clock_identity",
        {"birth"}},
       {"a total beside its parts, in cents",

@@ -228,8 +228,7 @@ TEST_CASE(
   REQUIRE(verdict.after_leaving_out);
   CHECK(verdict.after_leaving_out->overall == Overall::sound);
   CHECK(verdict.summary ==
-        "Singular as written; sound without `b`; the 1 coefficient outside the relations is "
-        "unaffected.");
+        "Singular as written; sound without `b`; the other coefficient is unaffected.");
   CHECK(verdict.grounds.identified.finding.find("a = b") != std::string::npos);
   focus_on(audit, 1);
   verdict = verdict_of(audit, {1, 2});
