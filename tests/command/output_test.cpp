@@ -3,6 +3,7 @@
 #include <fcntl.h>
 #include <stdlib.h>
 #include <sys/stat.h>
+#include <sys/sysmacros.h>
 #include <unistd.h>
 #include <zlib.h>
 #include <zstd.h>
@@ -29,6 +30,25 @@ bool is_verdict(const std::string& bytes) {
   const nlohmann::json document = nlohmann::json::parse(bytes, nullptr, false);
   return document.is_object() && document.contains("verdict");
 }
+
+/// A device that may be named to the program. A defect that replaced it would harm the whole
+/// machine when root runs the tests: root gets a node of its own in the folder, "" where none can
+/// be used.
+std::string device(const Scratch& folder, const std::string& name, unsigned minor) {
+  const fs::path real = fs::path("/dev") / name;
+  if (::geteuid() != 0) return real.string();
+  constexpr unsigned memory_devices = 1;  // the major number of null and full (null(4), full(4))
+  const fs::path own = folder.path() / name;
+  const mode_t kind = S_IFCHR | 0600;
+  if (::mknod(own.c_str(), kind, ::makedev(memory_devices, minor)) != 0) return "";
+  const int opened = ::open(own.c_str(), O_WRONLY | O_CLOEXEC);  // not on a mount without devices
+  if (opened < 0) return "";
+  ::close(opened);
+  return own.string();
+}
+
+constexpr unsigned minor_of_null = 3;
+constexpr unsigned minor_of_full = 7;
 
 /// The verdict without the description of the files, which names them.
 nlohmann::json verdict_of(const std::string& bytes) {
@@ -141,7 +161,8 @@ TEST_CASE("a full device is an error") {
   Scratch folder;
   with_data(folder);
   Setting full;
-  full.output_file = "/dev/full";
+  full.output_file = device(folder, "full", minor_of_full);
+  if (full.output_file.empty()) return;
   for (const std::vector<std::string>& arguments :
        {std::vector<std::string>{"check", "plain.csv"},
         std::vector<std::string>{"check", "plain.csv", "--json", "-"},
@@ -154,11 +175,13 @@ TEST_CASE("a full device is an error") {
     CHECK(run.errors == std::string("gramproof: ") + (by_name ? "/dev/stdout" : "standard output") +
                             ": cannot be written: No space left on device\n");
   }
-  const Run run = run_program(folder, {"check", "plain.csv", "--json", "/dev/full"});
+  const Run run = run_program(folder, {"check", "plain.csv", "--json", full.output_file});
   CAPTURE(run);
   CHECK(run.status == 2);
   CHECK(run.output.empty());
-  CHECK(run.errors == "gramproof: /dev/full: cannot be written: No space left on device\n");
+  CHECK(run.errors ==
+        "gramproof: " + full.output_file + ": cannot be written: No space left on device\n");
+  CHECK(fs::is_character_file(full.output_file));
 }
 
 TEST_CASE("devices and pipes are written directly") {
@@ -178,11 +201,13 @@ TEST_CASE("devices and pipes are written directly") {
     CHECK(run_program(folder, {"check", "plain.csv", "--json", name}, file).status == 0);
     CHECK(bytes_of(file.output_file) == document + text);
   }
-  const Run nothing = run_program(folder, {"check", "plain.csv", "--json", "/dev/null"});
+  const std::string null = device(folder, "null", minor_of_null);
+  if (null.empty()) return;
+  const Run nothing = run_program(folder, {"check", "plain.csv", "--json", null});
   CAPTURE(nothing);
   CHECK(nothing.status == 0);
   CHECK(nothing.output == text);
-  CHECK(fs::is_character_file("/dev/null"));
+  CHECK(fs::is_character_file(null));
 }
 
 TEST_CASE("a named pipe is written directly") {
