@@ -117,9 +117,10 @@ struct Conditioning {
                            ///< extreme ones
   Matrix right_vectors;    ///< kept columns x values: of the unit-length columns
   bool complete = true;
-  double condition_number = 1;  ///< scaled; inf when the smallest value is 0
-  Vector condition_indices;     ///< ascending
-  Matrix proportions;           ///< values x kept columns; each column sums to 1 (complete case)
+  double condition_number = 1;   ///< scaled; inf when the smallest value is 0
+  Vector condition_indices;      ///< ascending
+  Matrix proportions;            ///< values x kept columns; each column sums to 1 (complete case)
+  std::vector<int> pivot_order;  ///< kept columns by what each adds to those before it
   std::vector<int>
       proportions_rows;  ///< indices into singular_values of the rows that are reported
   std::vector<std::vector<int>>

@@ -30,7 +30,7 @@ std::vector<int> support(const exact::NullVector& vector, std::size_t columns) {
 /// Exact relations as findings, fewest columns first, then design order.
 void list_relations(const design::Design& design, const table::Schema& schema,
                     const scan::Digest& digest, Identification& found) {
-  std::vector<exact::NullVector> basis = exact::readable_basis(design, schema, found.null_space);
+  std::vector<exact::NullVector> basis = exact::readable_basis(design, found.null_space);
   const std::size_t columns = design.columns.size();
   std::stable_sort(basis.begin(), basis.end(), [&](const auto& left, const auto& right) {
     const std::vector<int> a = support(left, columns), b = support(right, columns);

@@ -160,7 +160,6 @@ void shorten_pairwise(std::vector<NullVector>& basis) {
 }  // namespace
 
 std::vector<NullVector> readable_basis(const design::Design& design,
-                                       const table::Schema& /*schema*/,
                                        const std::vector<NullVector>& null_vectors) {
   if (null_vectors.empty()) return {};
   const FlintSession session;

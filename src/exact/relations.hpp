@@ -57,7 +57,6 @@ struct ColumnSummary {
 /// first; the same vectors give the same basis. Beyond a budget by bits x nullity^2 the lattice is
 /// left out, beyond another shortening ends early.
 [[nodiscard]] std::vector<NullVector> readable_basis(const design::Design& design,
-                                                     const table::Schema& schema,
                                                      const std::vector<NullVector>& null_vectors);
 
 /// Text, cause and removable columns of one relation. `rows`: rows used.

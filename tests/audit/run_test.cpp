@@ -148,7 +148,7 @@ TEST_CASE("exact relations: found, named, and what is left out") {
             [](int i, Random&) { return i % 3 == 0   ? "x,p"
                                         : i % 3 == 1 ? "x,q"
                                                      : "y,p"; }),
-       "constant, [a = y], [b = q], [a = y] * [b = q]",
+       "constant, levels(a), levels(b), levels(a) * levels(b)",
        "",
        "empty_cell",
        {"[a = y] * [b = q]"}},

@@ -33,8 +33,7 @@ std::vector<exact::ColumnSummary> summaries_of(const Matrix& matrix) {
 std::vector<exact::Relation> relations_of(const Matrix& matrix) {
   const auto rank = exact::rank_of_sample(matrix.design, matrix.piece, matrix.order());
   std::vector<exact::Relation> relations;
-  for (const NullVector& vector :
-       exact::readable_basis(matrix.design, matrix.schema, rank.null_vectors)) {
+  for (const NullVector& vector : exact::readable_basis(matrix.design, rank.null_vectors)) {
     relations.push_back(exact::describe(matrix.design, matrix.schema, vector, summaries_of(matrix),
                                         matrix.piece.rows));
   }
