@@ -95,12 +95,13 @@ struct RelationFinding {
   double condition_index = 0;  ///< near only
 };
 
-/// A 0/1 column, or the level left out of a set (column -1, `label` names it), that rests on fewer
-/// than 10 rows.
+/// A 0/1 column, or what is left when a column or a set of them is 0 beside the constant, that
+/// rests on fewer than 10 rows.
 struct RareLevel {
   std::string label;
-  int column = -1;
+  int column = -1;  ///< design column whose ones are rare; -1 for what is left over
   std::uint64_t rows = 0;
+  std::vector<int> involves;  ///< design columns whose coefficients rest on those rows
 };
 
 // --- conditioning (methods: 3)
@@ -227,7 +228,8 @@ struct Audit {
   OptionRecord options;
   SourceRecord source;
   table::Schema schema;
-  design::Design design;  ///< settled, families assigned
+  design::Design design;      ///< settled, families assigned
+  std::vector<bool> focused;  ///< a design column: named by --focus; may be empty: see is_focused
   std::uint64_t rows_read = 0, rows_used = 0;
   std::vector<design::Exclusion> excluded;
   double sum_of_weights = 0;
@@ -254,6 +256,9 @@ struct Audit {
   Verdict verdict;
   std::vector<design::Note> notes;  ///< design notes and the audit's own
 };
+
+/// The column's coefficient will be read (--focus), also where the column is protected besides.
+[[nodiscard]] bool is_focused(const Audit& audit, int column);
 
 // Words as in the document.
 [[nodiscard]] std::string word_of(Grade grade);

@@ -84,13 +84,17 @@ std::vector<int> relating_columns(const ExceptionSearch& search, const exact::Nu
 /// The constant against 0/1 columns that all have the same coefficient: the violating rows are
 /// those of a level left out.
 bool is_complement_of_levels(const ExceptionSearch& search, const exact::NullVector& vector,
-                             const std::vector<int>& columns) {
+                             const std::vector<int>& columns, const scan::TestedVector& tested) {
   const mpz_class* constant = nullptr;
   for (const int j : columns) {
     if (search.design.columns[static_cast<std::size_t>(j)].constant)
       constant = &vector[static_cast<std::size_t>(j)];
   }
   if (constant == nullptr) return false;
+  // In a row of a level left out every 0/1 column is 0, so that only the constant is left.
+  const auto is_constant_alone = [&](const mpq_class& residual) { return residual == *constant; };
+  if (!std::all_of(tested.residuals.begin(), tested.residuals.end(), is_constant_alone))
+    return false;
   return std::all_of(columns.begin(), columns.end(), [&](int j) {
     const auto at = static_cast<std::size_t>(j);
     const design::DesignColumn& column = search.design.columns[at];
@@ -104,7 +108,7 @@ bool is_worth_reporting(const ExceptionSearch& search, const exact::NullVector& 
     return false;
   const std::vector<int> columns = relating_columns(search, vector, tested.violating);
   if (columns.size() < 2 || tested.holding < 10 * columns.size()) return false;
-  return !is_complement_of_levels(search, vector, columns);
+  return !is_complement_of_levels(search, vector, columns, tested);
 }
 
 }  // namespace
@@ -150,28 +154,6 @@ Result<std::vector<RelationFinding>> relations_but_for_rows(const ExceptionSearc
     findings.push_back(std::move(finding));
   }
   return findings;
-}
-
-std::vector<RareLevel> rare_levels(const design::Design& design, const table::Schema& schema,
-                                   const scan::Digest& digest,
-                                   const std::vector<int>& left_out_levels) {
-  std::vector<RareLevel> rare;
-  for (std::size_t j = 0; j < design.columns.size(); ++j) {
-    if (!design.columns[j].zero_one) continue;
-    const std::uint64_t ones = digest.columns[j].nonzero_rows;
-    if (ones > 0 && ones < rare_below)
-      rare.push_back({design.columns[j].label, static_cast<int>(j), ones});
-  }
-  for (std::size_t s = 0; s < design.level_sets.size(); ++s) {
-    if (left_out_levels[s] < 0) continue;
-    const auto level = static_cast<std::size_t>(left_out_levels[s]);
-    const std::uint64_t rows = digest.level_counts[s][level];
-    if (rows == 0 || rows >= rare_below) continue;
-    const table::ColumnFacts& facts =
-        schema.columns[static_cast<std::size_t>(design.level_sets[s].column)];
-    rare.push_back({"[" + facts.name + " = " + facts.levels[level].text + "]", -1, rows});
-  }
-  return rare;
 }
 
 }  // namespace gramproof::audit

@@ -35,13 +35,4 @@ struct ExceptionSearch {
 /// A finding with the terms of an integer vector filled in.
 [[nodiscard]] RelationFinding exact_terms(const exact::NullVector& vector, std::size_t columns);
 
-/// 0/1 columns that rest on fewer than 10 rows (our choice), and left-out levels that do.
-[[nodiscard]] std::vector<RareLevel> rare_levels(const design::Design& design,
-                                                 const table::Schema& schema,
-                                                 const scan::Digest& digest,
-                                                 const std::vector<int>& left_out_levels);
-
-/// Rows below which a level counts as rare (our choice).
-inline constexpr std::uint64_t rare_below = 10;
-
 }  // namespace gramproof::audit

@@ -70,6 +70,20 @@ std::string ratio_sentence(const Audit& audit, const std::vector<NoisyDirection>
       close.size() == 1 ? "one direction" : "some directions", text);
 }
 
+/// All columns but the constant are of one family and free of log, sqrt, exp and asinh: powers and
+/// the like, which centring or orthogonal polynomials set apart. Functions that agree stay near.
+bool is_of_powers(const Audit& audit, const RelationFinding& relation) {
+  int family = -1;
+  for (const RelationTerm& term : relation.terms) {
+    const design::DesignColumn& column =
+        audit.design.columns[static_cast<std::size_t>(term.column)];
+    if (column.constant) continue;
+    if (!column.exact || (family >= 0 && column.family != family)) return false;
+    family = column.family;
+  }
+  return true;
+}
+
 }  // namespace
 
 Ground identified_ground(const Audit& audit) {
@@ -82,7 +96,9 @@ Ground identified_ground(const Audit& audit) {
         audit.relations.begin(), audit.relations.end(), [](const RelationFinding& finding_) {
           return finding_.standing == Standing::exact && !finding_.text.empty();
         });
-    if (first != audit.relations.end()) finding += ": " + first->text;
+    if (first == audit.relations.end())
+      return {Grade::fail, finding + ": there are fewer rows than columns."};
+    finding += ": " + first->text;
     if (audit.rank.nullity > 1) finding += fmt::format(" (and {} more)", audit.rank.nullity - 1);
     return {Grade::fail, finding + "."};
   }
@@ -154,7 +170,10 @@ bool centring_cures(const Audit& audit) {
   const double lost = std::log10(indices[indices.size() - 1]);
   const bool normal = audit.solver == Solver::normal;
   const double left = -std::log10(unit_roundoff) - (normal ? 2 : 1) * lost;
-  return left >= thresholds.digits_caution;
+  if (left < thresholds.digits_caution) return false;
+  return std::all_of(audit.relations.begin(), audit.relations.end(), [&](const auto& relation) {
+    return relation.standing != Standing::near || is_of_powers(audit, relation);
+  });
 }
 
 Overall overall_of(const Grounds& grounds) {

@@ -67,6 +67,7 @@ void fill_kept(const design::Design& design, const exact::SampleRank& rank, std:
     const int column = static_cast<int>(j);
     (kept.contains(column) ? found.kept : found.left_out).push_back(column);
   }
+  found.too_few_rows = found.left_out.size() > rank.null_vectors.size();
   found.rank.columns = design.columns.size();
   found.rank.rank = found.kept.size();
   found.rank.nullity = found.left_out.size();
@@ -113,8 +114,10 @@ void fill_coefficients_lost(Identification& found, std::size_t columns) {
   for (const exact::NullVector& vector : found.null_space) {
     for (const int column : support(vector, columns)) lost.insert(column);
   }
-  // More columns that are not exact than rows: which of them are lost cannot be told apart.
-  lost.insert(found.left_out.begin(), found.left_out.end());
+  // Fewer rows than columns, some of them not exact: no single coefficient is determined for sure.
+  if (found.too_few_rows) {
+    for (std::size_t j = 0; j < columns; ++j) lost.insert(static_cast<int>(j));
+  }
   found.coefficients_lost.assign(lost.begin(), lost.end());
 }
 

@@ -30,7 +30,8 @@ struct Identification {
   std::vector<int>
       coefficients_lost;  ///< design columns with a non-zero coefficient in an exact relation
   std::vector<exact::NullVector>
-      null_space;  ///< relations among design columns (entry for ones zero), canonical
+      null_space;             ///< relations among design columns (entry for ones zero), canonical
+  bool too_few_rows = false;  ///< columns that are not exact had to be left out for want of rows
   bool constant_in_span = false;
   std::vector<int> constant_support;  ///< design columns whose exact combination is the constant
   int passes = 0;                     ///< further passes over the data

@@ -15,14 +15,11 @@ const Thresholds thresholds;
 class Focus {
  public:
   explicit Focus(const Audit& audit) : audit_(audit) {
-    for (const design::DesignColumn& column : audit.design.columns)
-      any_ |= column.role == design::Role::focus;
+    for (std::size_t j = 0; j < audit.design.columns.size(); ++j)
+      any_ |= is_focused(audit, static_cast<int>(j));
   }
   [[nodiscard]] bool any() const { return any_; }
-  [[nodiscard]] bool reads(int column) const {
-    return !any_ ||
-           audit_.design.columns[static_cast<std::size_t>(column)].role == design::Role::focus;
-  }
+  [[nodiscard]] bool reads(int column) const { return !any_ || is_focused(audit_, column); }
   [[nodiscard]] bool reads_family(int family) const {
     const std::vector<int>& columns =
         audit_.design.families[static_cast<std::size_t>(family)].columns;
@@ -73,31 +70,57 @@ bool index_counts(const Audit& audit, const Focus& focus, double threshold) {
   return false;
 }
 
+/// The direction that is told: the worst, or the one from the threshold up in which a focused
+/// family has the largest share of its variance.
+Index told_direction(const Audit& audit, const Focus& focus, double threshold) {
+  const BetweenFamilies& between = audit.between;
+  const Index last = between.indices.size() - 1;
+  if (!focus.any()) return last;
+  Index told = last;
+  double most = -1;
+  for (Index i = last; i >= 0 && between.indices[i] >= threshold; --i) {
+    for (std::size_t f = 0; f < between.families.size(); ++f) {
+      const double share = between.proportions(i, static_cast<Index>(f));
+      if (!focus.reads_family(between.families[f]) || share <= most) continue;
+      most = share;
+      told = i;
+    }
+  }
+  return told;
+}
+
 Reason index_reason(const Audit& audit, const Focus& focus) {
   const BetweenFamilies& between = audit.between;
   const Index last = between.indices.size() - 1;
   if (last < 1) return {};
-  const double index = between.indices[last];
   Reason reason;
-  if (index >= thresholds.index_fail && index_counts(audit, focus, thresholds.index_fail)) {
+  double threshold = 0;
+  const auto reaches = [&](double limit) {
+    return between.indices[last] >= limit && index_counts(audit, focus, limit);
+  };
+  if (reaches(thresholds.index_fail)) {
     reason.grade = Grade::fail;
-  } else if (index >= thresholds.index_caution &&
-             index_counts(audit, focus, thresholds.index_caution)) {
+    threshold = thresholds.index_fail;
+  } else if (reaches(thresholds.index_caution)) {
     reason.grade = Grade::caution;
+    threshold = thresholds.index_caution;
   } else {
     return {};
   }
-  std::vector<std::string> names = family_names(audit, last, 0.5);
-  if (names.size() < 2) names = family_names(audit, last, 0.2);
+  const Index told = told_direction(audit, focus, threshold);
+  std::vector<std::string> names = family_names(audit, told, 0.5);
+  if (names.size() < 2) names = family_names(audit, told, 0.2);
   reason.sentence = fmt::format(
       "{} carry nearly the same information (condition index {} between families; 10 is a caution, "
-      "30 a failure: "
-      "Belsley, Kuh & Welsch 1980, ch. 3, applied between families by our own choice).",
-      names.empty() ? "Some families" : names_in_words(names), figure(index));
+      "30 a failure: Belsley, Kuh & Welsch 1980, ch. 3, applied between families by our own "
+      "choice).",
+      names.empty() ? "Some families" : names_in_words(names), figure(between.indices[told]));
   return reason;
 }
 
 Reason inflation_reason(const Audit& audit, const Focus& focus) {
+  // Bases of columns that double precision cannot tell apart say nothing.
+  if (audit.conditioning.known_digits < 1) return {};
   const FamilyInflation* worst = nullptr;
   for (const FamilyInflation& entry : audit.between.inflation) {
     if (!focus.reads_family(entry.family)) continue;
@@ -166,8 +189,10 @@ Reason rare_reason(const Audit& audit, const Focus& focus) {
   std::vector<std::string> names;
   std::uint64_t fewest = 0;
   for (const RareLevel& level : audit.rare_levels) {
-    if (level.column >= 0 && !focus.reads(level.column)) continue;
-    if (level.column < 0 && focus.any()) continue;
+    const bool counts =
+        !focus.any() || std::any_of(level.involves.begin(), level.involves.end(),
+                                    [&](int column) { return focus.reads(column); });
+    if (!counts) continue;
     if (names.empty() || level.rows < fewest) fewest = level.rows;
     names.push_back(level.label);
   }
@@ -178,17 +203,25 @@ Reason rare_reason(const Audit& audit, const Focus& focus) {
                       names.size() == 1 ? "" : "the rarest on ", counted(fewest, "row", "rows"))};
 }
 
-std::string all_clear(const Audit& audit) {
+std::string all_clear(const Audit& audit, const Focus& focus) {
+  const std::string freedom =
+      fmt::format("{} residual degrees of freedom",
+                  grouped(static_cast<std::uint64_t>(audit.residual_degrees_of_freedom)));
+  if (focus.any()) {
+    return fmt::format(
+        "No coefficient in focus competes with the others in a direction with a condition index of "
+        "10 or more between families (Belsley, Kuh & Welsch 1980, ch. 3, applied between families "
+        "by our own choice), {}; what the controls do to each other is not graded.",
+        freedom);
+  }
   const BetweenFamilies& between = audit.between;
   const double index =
       between.indices.size() > 0 ? between.indices[between.indices.size() - 1] : 1.0;
   return fmt::format(
       "No family of columns competes with the others: largest condition index between families {} "
-      "(10 is a "
-      "caution: Belsley, Kuh & Welsch 1980, ch. 3, applied between families by our own choice), {} "
-      "residual "
-      "degrees of freedom.",
-      figure(index), grouped(static_cast<std::uint64_t>(audit.residual_degrees_of_freedom)));
+      "(10 is a caution: Belsley, Kuh & Welsch 1980, ch. 3, applied between families by our own "
+      "choice), {}.",
+      figure(index), freedom);
 }
 
 }  // namespace
@@ -207,7 +240,7 @@ Ground informative_ground(const Audit& audit) {
     if (!ground.finding.empty()) ground.finding += " ";
     ground.finding += reason.sentence;
   }
-  if (ground.grade == Grade::pass) ground.finding = all_clear(audit);
+  if (ground.grade == Grade::pass) ground.finding = all_clear(audit, focus);
   return ground;
 }
 

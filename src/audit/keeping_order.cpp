@@ -2,6 +2,7 @@
 #include <cstdint>
 
 #include "audit/identification.hpp"
+#include "audit/rare_levels.hpp"
 
 namespace gramproof::audit {
 namespace {
@@ -30,21 +31,17 @@ std::vector<int> most_frequent_levels(const design::Design& design, const scan::
   return result;
 }
 
-/// Most frequent member of each family of 0/1 columns coded by hand.
+/// Most frequent member of each set of 0/1 columns coded by hand that never meet.
 std::vector<bool> most_frequent_by_hand(const design::Design& design, const scan::Digest& digest) {
   std::vector<bool> result(design.columns.size(), false);
   for (const design::Family& family : design.families) {
     int best = -1;
-    std::size_t members = 0;
-    for (const int j : family.columns) {
-      const auto at = static_cast<std::size_t>(j);
-      if (!design.columns[at].zero_one || !design.columns[at].levels.empty()) continue;
-      ++members;
-      const bool more = best < 0 || digest.columns[at].nonzero_rows >
+    for (const int j : set_by_hand(design, digest, family)) {
+      const bool more = best < 0 || digest.columns[static_cast<std::size_t>(j)].nonzero_rows >
                                         digest.columns[static_cast<std::size_t>(best)].nonzero_rows;
       if (more) best = j;
     }
-    if (members >= 2) result[static_cast<std::size_t>(best)] = true;
+    if (best >= 0) result[static_cast<std::size_t>(best)] = true;
   }
   return result;
 }

@@ -112,15 +112,16 @@ std::string right_side(const design::Design& design, const std::vector<int>& col
 std::string cause_of(const design::Design& design, const std::vector<int>& columns) {
   std::set<int> families;
   std::vector<std::string> names;
-  bool all_zero_one = true;
+  bool all_zero_one = true, all_exact = true;
   for (const int j : columns) {
     const design::DesignColumn& column = design.columns[static_cast<std::size_t>(j)];
     if (column.constant) continue;
     all_zero_one = all_zero_one && column.zero_one;
+    all_exact = all_exact && column.exact;
     families.insert(column.family);
     names.push_back(column.label);
   }
-  if (families.size() == 1 && *families.begin() >= 0) {
+  if (families.size() == 1 && *families.begin() >= 0 && (all_exact || names.size() == 1)) {
     const std::string& family = design.families[static_cast<std::size_t>(*families.begin())].name;
     return fmt::format("All of it is made of `{}`{}: {}, and the fitted values stay as they are.",
                        family, columns.size() > names.size() ? " and the constant" : "",

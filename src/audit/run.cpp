@@ -6,9 +6,9 @@
 #include <cmath>
 #include <utility>
 
-#include "audit/exceptions.hpp"
 #include "audit/figures.hpp"
 #include "audit/identification.hpp"
+#include "audit/rare_levels.hpp"
 #include "audit/verdict.hpp"
 #include "base/text.hpp"
 #include "exact/relations.hpp"
@@ -176,12 +176,16 @@ ContrastFinding contrast_finding(const std::string& text,
 }
 
 Result<void> fill_contrasts(const Request& request,
-                            const std::vector<exact::NullVector>& null_space,
+                            const std::vector<exact::NullVector>& null_space, bool too_few_rows,
                             const scan::Digest& digest, Audit& audit) {
   for (const std::string& text : request.contrasts) {
     Result<std::vector<design::ContrastPart>> parts =
         design::parse_contrast(text, audit.design, audit.schema);
     if (!parts) return parts.error();
+    if (too_few_rows) {
+      audit.contrasts.push_back({text, false, std::nullopt, "fewer rows than columns"});
+      continue;
+    }
     audit.contrasts.push_back(contrast_finding(text, parts.value(), null_space, digest, audit));
   }
   return {};
@@ -202,7 +206,27 @@ struct Bound {
   table::Schema schema;
   design::Settled settled;
   scan::Digest digest;
+  std::vector<bool> focused;  ///< a design column: named by --focus
 };
+
+/// A role is one word, and protection comes first in it; who is in focus is kept besides.
+Result<void> assign_roles(const Request& request, Bound& bound) {
+  design::Design& design = bound.settled.design;
+  Result<void> focus = design::assign_roles(design, request.design.focus, {});
+  if (!focus) return focus;
+  for (const design::DesignColumn& column : design.columns)
+    bound.focused.push_back(column.role == design::Role::focus);
+  return design::assign_roles(design, request.design.focus, request.design.protect);
+}
+
+/// What is protected is never proposed for leaving out.
+void spare_protected(Audit& audit) {
+  for (RelationFinding& relation : audit.relations) {
+    std::erase_if(relation.removable, [&](int column) {
+      return audit.design.columns[static_cast<std::size_t>(column)].role == design::Role::protect;
+    });
+  }
+}
 
 /// Survey, bind, fold, settle.
 Result<Bound> scan_design(table::Source& source, const Request& request) {
@@ -235,9 +259,7 @@ Result<Bound> scan_design(table::Source& source, const Request& request) {
   }
   bound.digest = scan::settle(digest.value(), bound.settled);
   bound.schema = std::move(schema.value());
-  Result<void> roles =
-      design::assign_roles(bound.settled.design, request.design.focus, request.design.protect);
-  if (!roles) return roles.error();
+  if (Result<void> done = assign_roles(request, bound); !done) return done.error();
   design::assign_families(bound.settled.design, bound.schema, bound.digest.never_together);
   return bound;
 }
@@ -265,15 +287,20 @@ Result<Audit> run(table::Source& source, const Request& request) {
   audit.solver = request.solver;
   audit.schema = std::move(bound.schema);
   audit.design = std::move(bound.settled.design);
+  audit.focused = std::move(bound.focused);
   fill_source(source, audit);
   fill_from_digest(bound.digest, audit);
   const std::vector<exact::NullVector> null_space = found.value().null_space;
   const std::vector<int> constant_support = found.value().constant_support;
   const std::vector<int> lost = found.value().coefficients_lost;
+  const bool too_few_rows = found.value().too_few_rows;
   fill_identification(std::move(found.value()), audit);
-  audit.rare_levels = rare_levels(audit.design, audit.schema, bound.digest, bound.settled.left_out);
+  audit.rare_levels = rare_levels(audit.design, audit.schema, bound.digest, bound.settled.left_out,
+                                  audit.centred_by != CentredBy::none);
   fill_figures(bound.digest, constant_support, given.value(), audit);
-  if (Result<void> done = fill_contrasts(request, null_space, bound.digest, audit); !done)
+  spare_protected(audit);
+  if (Result<void> done = fill_contrasts(request, null_space, too_few_rows, bound.digest, audit);
+      !done)
     return done.error();
   add_notes(audit);
   audit.verdict = verdict_of(audit, lost);

@@ -20,7 +20,7 @@ std::vector<std::string> labels(const Audit& audit, const std::vector<int>& colu
 std::string fate_of_coefficients(const Audit& audit, const std::vector<int>& lost) {
   std::vector<std::string> focused_lost, focused_safe;
   for (std::size_t j = 0; j < audit.design.columns.size(); ++j) {
-    if (audit.design.columns[j].role != design::Role::focus) continue;
+    if (!is_focused(audit, static_cast<int>(j))) continue;
     const bool is_lost = std::binary_search(lost.begin(), lost.end(), static_cast<int>(j));
     (is_lost ? focused_lost : focused_safe).push_back(audit.design.columns[j].label);
   }
@@ -35,6 +35,13 @@ std::string fate_of_coefficients(const Audit& audit, const std::vector<int>& los
   if (others == 0) return "no coefficient can be read as written";
   if (others == 1) return "the other coefficient is unaffected";
   return fmt::format("the {} other coefficients are unaffected", grouped(others));
+}
+
+bool any_focused(const Audit& audit) {
+  for (std::size_t j = 0; j < audit.design.columns.size(); ++j) {
+    if (is_focused(audit, static_cast<int>(j))) return true;
+  }
+  return false;
 }
 
 std::string singular_summary(const Audit& audit, Overall after, const std::vector<int>& lost) {
@@ -68,8 +75,8 @@ std::string summary_of(const Audit& audit, const Verdict& verdict) {
     case Overall::sound:
       break;
   }
-  return "Sound: X'X can be inverted reliably and every coefficient keeps usable information of "
-         "its own.";
+  const std::string who = any_focused(audit) ? "every coefficient in focus" : "every coefficient";
+  return "Sound: X'X can be inverted reliably and " + who + " keeps usable information of its own.";
 }
 
 }  // namespace

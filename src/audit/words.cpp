@@ -2,6 +2,12 @@
 
 namespace gramproof::audit {
 
+bool is_focused(const Audit& audit, int column) {
+  const auto at = static_cast<std::size_t>(column);
+  if (audit.design.columns[at].role == design::Role::focus) return true;
+  return at < audit.focused.size() && audit.focused[at];
+}
+
 std::string word_of(Grade grade) {
   switch (grade) {
     case Grade::pass:

@@ -127,6 +127,11 @@ bool is_clock(const Evidence& e) {
   }
   const std::array<Terms::value_type, 3> terms = {s.left[0], s.left[1], s.right[0]};
   const auto count = [&](auto&& test) { return std::count_if(terms.begin(), terms.end(), test); };
+  // Age, year and birth are columns of their own: parts of one column, or products, are no clocks.
+  if (count([&](const auto& t) {
+        return column_of(e, t).definition->operation == design::Operation::cell;
+      }) != 3)
+    return false;
   const auto years = count([&](const auto& t) { return looks_like_year(e, t); });
   const auto named = count([&](const auto& t) { return named_for_time(column_of(e, t).label); });
   return years >= 2 || named >= 2;

@@ -30,8 +30,7 @@ std::vector<const Inflation*> worst_first(const audit::Audit& audit) {
 }
 
 bool is_focus(const audit::Audit& audit, const Inflation& inflation) {
-  return audit.design.columns.at(static_cast<std::size_t>(inflation.column)).role ==
-         design::Role::focus;
+  return audit::is_focused(audit, inflation.column);
 }
 
 /// Other kept columns of the family of `column`.
@@ -148,9 +147,7 @@ std::string share_sentence(const audit::Audit& audit) {
 void write_lost_focus(const audit::Audit& audit, Page& page) {
   std::vector<int> lost;
   for (const int column : audit.left_out) {
-    if (audit.design.columns.at(static_cast<std::size_t>(column)).role == design::Role::focus) {
-      lost.push_back(column);
-    }
+    if (audit::is_focused(audit, column)) lost.push_back(column);
   }
   if (lost.empty()) return;
   page.paragraph(fmt::format("{} {} left out above and ha{} no coefficient of {} own.",

@@ -33,6 +33,11 @@ std::string exclusion_sentence(const audit::Audit& audit, const Exclusion& exclu
     case Exclusion::Reason::weight_zero:
       return fmt::format("{}: weight 0 in {}.", rows, table_name(audit, audit.design.weight));
     case Exclusion::Reason::undefined:
+      if (exclusion.column < 0) {
+        return fmt::format("{}: {} has no value there.", rows,
+                           audit.design.filter ? "the condition `" + audit.design.filter_text + "`"
+                                               : "a product with the level left out");
+      }
       return fmt::format(
           "{}: {} has no value there (such as the logarithm of 0, or a division by 0).", rows,
           design_name(audit, exclusion.column));

@@ -223,6 +223,105 @@ TEST_CASE("a level of one row is rare, not a relation with an exception") {
   }
 }
 
+TEST_CASE("what is left beside hand-coded 0/1 columns is a level too") {
+  struct Case {
+    std::string why, text, design, label;
+    std::uint64_t rows;
+  };
+  const auto fuel = [](int i, const std::string& odd) {
+    return i == 149 ? odd : i % 3 == 0 ? "1,0,0" : i % 3 == 1 ? "0,1,0" : "0,0,1";
+  };
+  const std::vector<Case> cases = {
+      {"one row without any of them",
+       rows("gas,oil,wood,z", 300, 21,
+            [&](int i, Random& random) {
+              return fmt::format("{},{}", fuel(i, "0,0,0"), random.whole(0, 96));
+            }),
+       "constant, rest", "none of `gas`, `oil` and `wood`", 1},
+      {"a column that is 0 in three rows",
+       rows("urban,z", 300, 22,
+            [&](int i, Random& random) {
+              return fmt::format("{},{}", i % 140 == 5 ? 0 : 1, random.whole(0, 96));
+            }),
+       "constant, rest", "not urban", 3}};
+  for (const Case& row : cases) {
+    CAPTURE(row.why);
+    const Audit audit = audited(row.text, row.design);
+    REQUIRE(audit.rare_levels.size() == 1);
+    CHECK(audit.rare_levels[0].label == row.label);
+    CHECK(audit.rare_levels[0].rows == row.rows);
+    CHECK(audit.verdict.overall == Overall::guarded);
+  }
+  // Two 1s in one row are no level left out: the sum holds except there.
+  const Audit twice =
+      audited(rows("gas,oil,wood,z", 300, 23,
+                   [&](int i, Random& random) {
+                     return fmt::format("{},{}", fuel(i, "1,1,0"), random.whole(0, 96));
+                   }),
+              "constant, rest");
+  const RelationFinding* relation = first_of(twice, Standing::exact_except);
+  REQUIRE(relation != nullptr);
+  CHECK(relation->text == "gas + oil + wood = 1");
+  CHECK(relation->violations.at(0).row == 150);
+  CHECK(twice.verdict.grounds.informative.grade == Grade::fail);
+}
+
+TEST_CASE("focus: protection does not cancel it, and controls are not accused") {
+  const std::string text = rows("f,g,c,d,h", 300, 24, [](int, Random& random) {
+    const auto f = random.whole(1, 900), c = random.whole(1, 900);
+    return fmt::format("{},{},{},{},{}", f * 10 + random.whole(0, 4), f * 10,
+                       c * 1000 + random.whole(0, 6), c * 1000, random.whole(0, 90));
+  });
+  Request request;
+  request.design.design = "constant, rest";
+  request.design.focus = {"f"};
+  for (const std::vector<std::string>& protect :
+       {std::vector<std::string>{}, std::vector<std::string>{"f"}}) {
+    request.design.protect = protect;
+    const Result<Audit> audit = audited(text, request);
+    REQUIRE(audit);
+    const Ground& ground = audit.value().verdict.grounds.informative;
+    CAPTURE(ground.finding);
+    CHECK(ground.grade == Grade::fail);
+    CHECK(ground.finding.find("`f` and `g`") != std::string::npos);
+    CHECK(ground.finding.find("`c`") == std::string::npos);
+  }
+  request.design.focus = {"h"};
+  request.design.protect = {};
+  const Result<Audit> audit = audited(text, request);
+  REQUIRE(audit);
+  CHECK(audit.value().verdict.grounds.informative.grade == Grade::pass);
+  CHECK(audit.value().verdict.grounds.informative.finding.find("not graded") != std::string::npos);
+}
+
+TEST_CASE("fewer rows than columns through functions: no single coefficient is called estimable") {
+  Request request;
+  request.design.design = "constant, a, b, log(a), log(b), sqrt(a)";
+  request.contrasts = {"a", "sqrt(a)"};
+  const Result<Audit> audit = audited("a,b\n1.5,2\n2,3.5\n3,5.1\n4,1.2\n", request);
+  REQUIRE(audit);
+  CHECK(audit.value().rank.rank == 4);
+  for (const ContrastFinding& contrast : audit.value().contrasts) CHECK_FALSE(contrast.estimable);
+  CHECK(audit.value().verdict.coefficients_lost.size() == 6);
+}
+
+TEST_CASE("cumulative brackets are no level set: the column written last is left out") {
+  const std::string text = rows("x,band,y", 100, 25, [](int i, Random& random) {
+    const int x = i * 7 % 21;
+    return fmt::format("{},{},{}", x, (x >= 5) + (x >= 10), random.whole(0, 96));
+  });
+  Request request;
+  request.design.design = "constant, [x >= 5], [x >= 10], band, y";
+  Result<Audit> audit = audited(text, request);
+  REQUIRE(audit);
+  CHECK(labels(audit.value(), audit.value().left_out) == std::vector<std::string>{"band"});
+  request.design.protect = {"band"};
+  audit = audited(text, request);
+  REQUIRE(audit);
+  for (const std::string& name : labels(audit.value(), audit.value().relations.at(0).removable))
+    CHECK(name != "band");
+}
+
 TEST_CASE("shares rounded to one decimal: near, and no farther than their rounding") {
   const std::string text = rows("rent,fuel,other", 500, 11, [](int, Random& random) {
     const double rent = 20 + 40 * random.unit(), fuel = 10 + 30 * random.unit();

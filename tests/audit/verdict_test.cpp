@@ -127,7 +127,7 @@ TEST_CASE("informative: indices between families, inflation, rows and exceptions
         "no residual degree"},
        {"a rare level",
         [](Audit& a) {
-          a.rare_levels.push_back({"[fuel = peat]", 2, 3});
+          a.rare_levels.push_back({"[fuel = peat]", 2, 3, {2}});
         },
         Grade::caution, "3 rows"},
        {"30 violating rows",
@@ -176,7 +176,7 @@ TEST_CASE("focus: what is not read does not count") {
                 Grade::fail, "that row"},
                {"a rare level among controls",
                 [](Audit& a) {
-                  a.rare_levels.push_back({"[fuel = peat]", 2, 3});
+                  a.rare_levels.push_back({"[fuel = peat]", 2, 3, {2}});
                   focus_on(a, 1);
                 },
                 Grade::pass, ""},
