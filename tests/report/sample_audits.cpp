@@ -192,7 +192,7 @@ Audit focus() {
   set_between(audit, {{"schooling", 1}, {"experience", 1}, {"region", 2}}, {1, 1.3, 1.6, 2.9});
   audit.contrasts = {{"schooling + 10*experience", true, 0.0041, ""},
                      {"region_sum", false, std::nullopt, "east + south = constant"}};
-  audit.rare_levels = {{"[region = east]", 3, 4}, {"[region = north]", -1, 1}};
+  audit.rare_levels = {{"[region = east]", 3, 4, {3}}, {"[region = north]", -1, 1, {3}}};
   audit.verdict.overall = Overall::guarded;
   audit.verdict.summary = "Guarded: usable, but two levels of `region` rest on fewer than 10 rows.";
   audit.verdict.grounds.informative = {Grade::caution,
