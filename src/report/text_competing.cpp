@@ -173,11 +173,10 @@ void write_between_families(const audit::Audit& audit, Page& page) {
   const double largest = between.indices[last];
   std::string text = fmt::format(
       "The `informative` ground asks another question. Columns made from the same source are one "
-      "family "
-      "and are read together, and what a column shares with the constant alone costs its slope "
-      "nothing. "
-      "Between families{} the largest index is {}.",
-      audit.centred_by == audit::CentredBy::none ? "" : ", the constant set aside,",
+      "family and are read together, and what a column shares with the constant alone costs its "
+      "slope nothing. Between families{} the largest index is {}.",
+      // A constant that only several families make together is not set aside.
+      audit.centred_by == audit::CentredBy::column ? ", the constant set aside," : "",
       index_text(audit, largest));
   if (largest >= weak_index) {
     const auto names = family_names(audit, sharing(between.proportions, {last}));
