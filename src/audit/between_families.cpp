@@ -84,8 +84,8 @@ class FamilySpace {
 
   /// The constant is a column, or lies in the span of one family and those under it. Shares that
   /// add up to one, without a constant, have no such home: they differ in nothing but the constant,
-  /// and taking it out would make competitors of columns that are told apart perfectly. It stays in
-  /// then.
+  /// and taking it out of them would make competitors of columns that are told apart perfectly. It
+  /// stays in them then, and goes out of the families that have no part in it.
   void project_constant_out(const Columns& support) {
     const Columns ones = {static_cast<int>(columns_.cols()) - 1};
     if (std::any_of(support.begin(), support.end(), [&](int c) { return is_constant(c); })) {
@@ -100,6 +100,19 @@ class FamilySpace {
       base_ = ones;
       std::erase(own_[static_cast<std::size_t>(f)], largest_part(support, own(f)));
       return;
+    }
+    centre_families_without(support);
+  }
+
+  /// What the families without a part in the constant span together with those that make it stays
+  /// the same.
+  void centre_families_without(const Columns& support) {
+    const Vector ones = columns_.col(columns_.cols() - 1);
+    for (const Columns& own : own_) {
+      if (std::any_of(own.begin(), own.end(), [&](int c) { return covers(support, {c}); }))
+        continue;
+      for (const int column : own)
+        columns_.col(column) -= ones * (ones.dot(columns_.col(column)) / ones.squaredNorm());
     }
   }
 

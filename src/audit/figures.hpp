@@ -43,8 +43,8 @@ namespace gramproof::audit {
 /// is the constant (the constant column itself, or the kept columns that make it; empty when it is
 /// not in the span). Dimensions follow from it exactly: |F| minus one where the constant is in the
 /// span of F and the families under F but not of the latter alone. A constant that no family holds
-/// so (shares that add up to one) is not projected out. O(k^3), and as much again for each family
-/// that has others above it.
+/// so (shares that add up to one) is projected out of the families without a part in it only.
+/// O(k^3), and as much again for each family that has others above it.
 [[nodiscard]] BetweenFamilies between_families(const factor::Factor& factor,
                                                const design::Design& design,
                                                const std::vector<int>& kept,

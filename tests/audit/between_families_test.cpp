@@ -265,6 +265,36 @@ TEST_CASE("shares that add up to one without a constant are told apart") {
   CHECK(found.inflation[0].generalised_vif < 2);
 }
 
+TEST_CASE(
+    "beside shares that add up to one, a column is judged as beside a constant and fewer shares") {
+  // Both designs span the same columns, so what age keeps beside the rest is the same in both; its
+  // mean costs it nothing in either.
+  test::Random random(12);
+  Matrix shares(70, 4), beside_constant(70, 4);
+  for (Index i = 0; i < 70; ++i) {
+    const double first = 0.2 + 0.3 * random.unit(), second = 0.2 + 0.2 * random.unit();
+    const double age = 40 + 20 * random.unit() + 10 * first;
+    shares.row(i) << first, second, 1 - first - second, age;
+    beside_constant.row(i) << 1, first, second, age;
+  }
+  const auto parts =
+      between(shares,
+              test::made_design(
+                  {{"a", {0}, {"a"}}, {"b", {1}, {"b"}}, {"c", {2}, {"c"}}, {"age", {3}, {"age"}}}),
+              {0, 1, 2});
+  const auto usual = between(beside_constant,
+                             test::made_design({{"constant", {}, {"constant"}},
+                                                {"a", {0}, {"a"}},
+                                                {"b", {1}, {"b"}},
+                                                {"age", {3}, {"age"}}}),
+                             {0});
+  const double inflation = parts.inflation.back().generalised_vif;
+  CHECK(std::abs(inflation - usual.inflation.back().generalised_vif) <= mild);
+  CHECK(inflation < 2);
+  check_proportions_add_up(parts);
+  CHECK(parts.proportions(parts.proportions.rows() - 1, 3) < 0.1);
+}
+
 TEST_CASE("a constant alone has no families between which to judge") {
   const auto found =
       between(Matrix::Ones(10, 1), test::made_design({{"constant", {}, {"constant"}}}), {0});
