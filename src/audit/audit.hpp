@@ -13,6 +13,7 @@
 #include "base/numeric.hpp"
 #include "design/design.hpp"
 #include "design/rows.hpp"
+#include "exact/rank.hpp"
 #include "scan/digest.hpp"
 #include "table/survey.hpp"
 
@@ -64,10 +65,18 @@ struct Rank {
   std::uint64_t nullity = 0;
   bool proved =
       true;  ///< false when columns hold log, sqrt, exp or asinh: these count as independent
+  std::uint64_t numerical = 0;  ///< rank less the relations that hold within rounding
+  std::optional<std::uint64_t> rank_of_the_doubles;  ///< exact rank of X rounded to doubles
   std::optional<Certificate> certificate;
 };
 
-enum class Standing : std::uint8_t { exact, exact_except, near };
+enum class Standing : std::uint8_t {
+  exact,
+  exact_except,
+  within_rounding,
+  within_recorded_precision,
+  near
+};
 
 struct Violation {
   std::string file;
@@ -241,6 +250,7 @@ struct Audit {
   Rank rank;
   std::vector<RelationFinding> relations;  ///< ordered by standing, number of columns, design order
   std::uint64_t relations_omitted = 0;
+  std::vector<exact::NullVector> null_space;  ///< basis of the exact relations, entry for ones zero
   std::vector<RareLevel> rare_levels;
   std::vector<int> kept, left_out;  ///< design columns, in design order
   CentredBy centred_by = CentredBy::none;

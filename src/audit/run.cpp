@@ -111,6 +111,7 @@ void fill_identification(Identification found, Audit& audit) {
   audit.left_out = std::move(found.left_out);
   audit.relations = std::move(found.relations);
   audit.relations_omitted = found.relations_omitted;
+  audit.null_space = std::move(found.null_space);
   audit.passes += found.passes;
   audit.centred_by = centred_by(found, audit.design);
   if (audit.centred_by == CentredBy::span) {
@@ -149,12 +150,11 @@ void fill_figures(const scan::Digest& digest, const std::vector<int>& constant_s
 /// Estimable: orthogonal to every exact relation (Silvey 1969), decided in integers.
 ContrastFinding contrast_finding(const std::string& text,
                                  const std::vector<design::ContrastPart>& parts,
-                                 const std::vector<exact::NullVector>& null_space,
                                  const scan::Digest& digest, const Audit& audit) {
   ContrastFinding finding;
   finding.text = text;
   finding.estimable = true;
-  for (const exact::NullVector& relation : null_space) {
+  for (const exact::NullVector& relation : audit.null_space) {
     mpq_class product = 0;
     for (const design::ContrastPart& part : parts) {
       product +=
@@ -175,9 +175,8 @@ ContrastFinding contrast_finding(const std::string& text,
   return finding;
 }
 
-Result<void> fill_contrasts(const Request& request,
-                            const std::vector<exact::NullVector>& null_space, bool too_few_rows,
-                            const scan::Digest& digest, Audit& audit) {
+Result<void> fill_contrasts(const Request& request, bool too_few_rows, const scan::Digest& digest,
+                            Audit& audit) {
   for (const std::string& text : request.contrasts) {
     Result<std::vector<design::ContrastPart>> parts =
         design::parse_contrast(text, audit.design, audit.schema);
@@ -186,7 +185,7 @@ Result<void> fill_contrasts(const Request& request,
       audit.contrasts.push_back({text, false, std::nullopt, "fewer rows than columns"});
       continue;
     }
-    audit.contrasts.push_back(contrast_finding(text, parts.value(), null_space, digest, audit));
+    audit.contrasts.push_back(contrast_finding(text, parts.value(), digest, audit));
   }
   return {};
 }
@@ -290,7 +289,6 @@ Result<Audit> run(table::Source& source, const Request& request) {
   audit.focused = std::move(bound.focused);
   fill_source(source, audit);
   fill_from_digest(bound.digest, audit);
-  const std::vector<exact::NullVector> null_space = found.value().null_space;
   const std::vector<int> constant_support = found.value().constant_support;
   const std::vector<int> lost = found.value().coefficients_lost;
   const bool too_few_rows = found.value().too_few_rows;
@@ -299,8 +297,7 @@ Result<Audit> run(table::Source& source, const Request& request) {
                                   audit.centred_by != CentredBy::none);
   fill_figures(bound.digest, constant_support, given.value(), audit);
   spare_protected(audit);
-  if (Result<void> done = fill_contrasts(request, null_space, too_few_rows, bound.digest, audit);
-      !done)
+  if (Result<void> done = fill_contrasts(request, too_few_rows, bound.digest, audit); !done)
     return done.error();
   add_notes(audit);
   audit.verdict = verdict_of(audit, lost);

@@ -42,6 +42,10 @@ std::string word_of(Standing standing) {
       return "exact";
     case Standing::exact_except:
       return "exact_except";
+    case Standing::within_rounding:
+      return "within_rounding";
+    case Standing::within_recorded_precision:
+      return "within_recorded_precision";
     case Standing::near:
       break;
   }
