@@ -1,77 +1,29 @@
 #include "audit/exceptions.hpp"
 
 #include <algorithm>
+#include <set>
 
+#include "audit/rare_levels.hpp"
+#include "audit/violations.hpp"
+#include "base/text.hpp"
+#include "exact/hidden_relations.hpp"
 #include "exact/relations.hpp"
 
 namespace gramproof::audit {
 namespace {
 
+using exact::NullVector;
+
+/// Vectors that one pass tests: far more than a report lists.
+constexpr std::size_t most_tested = 100;
+
 std::uint64_t most_violating(std::uint64_t rows) {
   return std::max<std::uint64_t>(5, rows / 100);
 }
 
-/// The cell as it was understood: the number in plain decimals, or the text.
-std::string cell_text(const table::Schema& schema, const table::Piece& piece, int column,
-                      std::size_t row) {
-  const auto at = static_cast<std::size_t>(column);
-  const table::PieceColumn& cells = piece.columns[at];
-  if (!cells.loaded || cells.missing[row]) return "";
-  if (cells.kind == table::ColumnKind::numeric) return table::plain_text(cells.number(row));
-  const std::int32_t code = cells.code[row];
-  return code < 0 ? "" : schema.columns[at].levels[static_cast<std::size_t>(code)].text;
-}
-
-/// Exact decimal of a rational when it has one, else the fraction.
-std::string residual_text(const mpq_class& value) {
-  mpz_class denominator = value.get_den();
-  std::int32_t twos = 0, fives = 0;
-  while (mpz_divisible_ui_p(denominator.get_mpz_t(), 2)) denominator /= 2, ++twos;
-  while (mpz_divisible_ui_p(denominator.get_mpz_t(), 5)) denominator /= 5, ++fives;
-  if (denominator != 1) return value.get_str();
-  table::Number number;
-  number.decimals = std::max(twos, fives);
-  mpz_class power;
-  mpz_ui_pow_ui(power.get_mpz_t(), 10, static_cast<unsigned long>(number.decimals));
-  const mpz_class mantissa = value.get_num() * power / value.get_den();
-  number.wide = mantissa.get_str();
-  return table::plain_text(number);
-}
-
-std::vector<int> source_columns(const design::Design& design, const exact::NullVector& vector) {
-  std::vector<int> sources;
-  for (std::size_t j = 0; j < design.columns.size(); ++j) {
-    if (vector[j] == 0) continue;
-    sources.insert(sources.end(), design.columns[j].sources.begin(),
-                   design.columns[j].sources.end());
-  }
-  std::sort(sources.begin(), sources.end());
-  sources.erase(std::unique(sources.begin(), sources.end()), sources.end());
-  return sources;
-}
-
-void add_violations(const ExceptionSearch& search, const exact::NullVector& vector,
-                    const scan::TestedVector& tested, RelationFinding& finding) {
-  const std::vector<int> sources = source_columns(search.design, vector);
-  const table::Piece& rows = tested.violators;
-  for (std::size_t i = 0; i < rows.rows; ++i) {
-    Violation violation;
-    const std::size_t file = rows.file_of_row.empty() ? rows.file : rows.file_of_row[i];
-    violation.file = search.file_names[file];
-    violation.line = rows.line[i];
-    violation.row = rows.row[i];
-    violation.residual = residual_text(tested.residuals[i]);
-    for (const int column : sources) {
-      violation.cells.emplace_back(search.schema.columns[static_cast<std::size_t>(column)].name,
-                                   cell_text(search.schema, rows, column, i));
-    }
-    finding.violations.push_back(std::move(violation));
-  }
-}
-
 /// What is left of a relation once columns that are zero in all but `rows` rows are set aside: the
 /// columns that really relate.
-std::vector<int> relating_columns(const ExceptionSearch& search, const exact::NullVector& vector,
+std::vector<int> relating_columns(const ExceptionSearch& search, const NullVector& vector,
                                   std::uint64_t rows) {
   std::vector<int> result;
   for (std::size_t j = 0; j < search.design.columns.size(); ++j) {
@@ -83,8 +35,8 @@ std::vector<int> relating_columns(const ExceptionSearch& search, const exact::Nu
 
 /// The constant against 0/1 columns that all have the same coefficient: the violating rows are
 /// those of a level left out.
-bool is_complement_of_levels(const ExceptionSearch& search, const exact::NullVector& vector,
-                             const std::vector<int>& columns, const scan::TestedVector& tested) {
+bool is_complement_of_columns(const ExceptionSearch& search, const NullVector& vector,
+                              const std::vector<int>& columns, const scan::TestedVector& tested) {
   const mpz_class* constant = nullptr;
   for (const int j : columns) {
     if (search.design.columns[static_cast<std::size_t>(j)].constant)
@@ -102,18 +54,185 @@ bool is_complement_of_levels(const ExceptionSearch& search, const exact::NullVec
   });
 }
 
-bool is_worth_reporting(const ExceptionSearch& search, const exact::NullVector& vector,
+bool uses_set(const design::DesignColumn& column, int set) {
+  return std::any_of(column.levels.begin(), column.levels.end(),
+                     [set](const design::LevelUse& use) { return use.set == set; });
+}
+
+/// Rows with a level of the set that no column of the design carries.
+std::uint64_t rows_without_column(const ExceptionSearch& search, std::size_t set) {
+  std::set<int> carried;
+  for (const design::DesignColumn& column : search.design.columns) {
+    for (const design::LevelUse& use : column.levels) {
+      if (use.set == static_cast<int>(set)) carried.insert(use.level);
+    }
+  }
+  std::uint64_t rows = 0;
+  const std::vector<std::uint64_t>& counts = search.digest.level_counts[set];
+  for (std::size_t level = 0; level < counts.size(); ++level) {
+    if (!carried.contains(static_cast<int>(level))) rows += counts[level];
+  }
+  return rows;
+}
+
+/// A column against its products with the levels of a set whose level left out is rare: that level
+/// is told of instead.
+bool is_complement_of_levels(const ExceptionSearch& search, const NullVector& vector,
+                             const std::vector<int>& columns) {
+  for (std::size_t set = 0; set < search.design.level_sets.size(); ++set) {
+    std::vector<mpz_class> with, without;
+    for (const int j : columns) {
+      const auto at = static_cast<std::size_t>(j);
+      (uses_set(search.design.columns[at], static_cast<int>(set)) ? with : without)
+          .push_back(vector[at]);
+    }
+    if (without.size() != 1 || with.empty()) continue;
+    const bool same = std::all_of(with.begin(), with.end(),
+                                  [&](const mpz_class& v) { return v == -without.front(); });
+    if (same && rows_without_column(search, set) < rare_below) return true;
+  }
+  return false;
+}
+
+bool is_worth_reporting(const ExceptionSearch& search, const NullVector& vector,
                         const scan::TestedVector& tested) {
   if (tested.violating == 0 || tested.violating > most_violating(search.digest.rows_used))
     return false;
   const std::vector<int> columns = relating_columns(search, vector, tested.violating);
   if (columns.size() < 2 || tested.holding < 10 * columns.size()) return false;
-  return !is_complement_of_levels(search, vector, columns, tested);
+  return !is_complement_of_columns(search, vector, columns, tested) &&
+         !is_complement_of_levels(search, vector, columns);
+}
+
+std::vector<NullVector> resting_on_one_row(const ExceptionSearch& search) {
+  std::vector<NullVector> vectors;
+  for (const std::size_t row : exact::essential_rows(
+           search.design, search.digest.sample, search.rank, search.digest.random_combination)) {
+    NullVector vector =
+        exact::relation_without_row(search.design, search.digest.sample, search.rank, row);
+    // A level that rests on this row alone needs no pass: the vector is that column.
+    if (relating_columns(search, vector, 1).size() >= 2) vectors.push_back(std::move(vector));
+  }
+  return vectors;
+}
+
+std::size_t columns_in(const NullVector& vector) {
+  return static_cast<std::size_t>(
+      std::count_if(vector.begin(), vector.end(), [](const auto& v) { return v != 0; }));
+}
+
+/// Fewer columns by adding exact relations, which changes no residual: `total = parts` where
+/// another column repeats a part.
+NullVector shortened(NullVector vector, const std::vector<NullVector>& null_space) {
+  bool changed = true;
+  while (changed) {
+    changed = false;
+    for (const NullVector& relation : null_space) {
+      for (std::size_t j = 0; j < vector.size(); ++j) {
+        if (vector[j] == 0 || relation[j] == 0) continue;
+        NullVector next(vector.size());
+        for (std::size_t i = 0; i < vector.size(); ++i)
+          next[i] = vector[i] * relation[j] - relation[i] * vector[j];
+        if (columns_in(next) >= columns_in(vector)) continue;
+        exact::make_primitive(next);
+        vector = std::move(next);
+        changed = true;
+      }
+    }
+  }
+  return vector;
+}
+
+/// Positions of the vectors that do not follow from the exact relations and from those before them,
+/// columns that are zero in all but a few rows set aside.
+std::vector<std::size_t> independent_ones(const ExceptionSearch& search,
+                                          const std::vector<NullVector>& vectors) {
+  const std::size_t known = search.null_space.size();
+  std::vector<NullVector> all = search.null_space;
+  all.insert(all.end(), vectors.begin(), vectors.end());
+  exact::ExactRows entries;
+  for (std::size_t j = 0; j < search.design.columns.size(); ++j) {
+    if (search.digest.columns[j].nonzero_rows <= most_violating(search.digest.rows_used)) continue;
+    std::vector<exact::Integer> row;
+    for (const NullVector& vector : all) row.push_back(vector[j]);
+    entries.rows.push_back(std::move(row));
+    entries.number.push_back(j);
+  }
+  std::vector<int> order;
+  for (std::size_t i = 0; i < all.size(); ++i) order.push_back(static_cast<int>(i));
+  std::vector<std::size_t> result;
+  for (const int i : exact::rank_of_sample(entries, order).pivot_columns) {
+    if (static_cast<std::size_t>(i) >= known) result.push_back(static_cast<std::size_t>(i) - known);
+  }
+  return result;
+}
+
+/// Adds the vectors that are not there yet and have two columns that really relate.
+void add_fresh(const ExceptionSearch& search, std::vector<NullVector> more,
+               std::vector<NullVector>& vectors) {
+  for (NullVector& vector : more) {
+    if (vectors.size() == most_tested) return;
+    NullVector shorter = shortened(std::move(vector), search.null_space);
+    if (relating_columns(search, shorter, 1).size() < 2) continue;
+    if (std::find(vectors.begin(), vectors.end(), shorter) == vectors.end())
+      vectors.push_back(std::move(shorter));
+  }
+}
+
+/// What the single rows and the random row sets suggest, and the readable combinations of it: null
+/// vectors come in a form that mixes two relations.
+std::vector<NullVector> candidates(const ExceptionSearch& search, Exceptions& result) {
+  exact::HiddenSearch hidden;
+  hidden.columns = search.rank.pivot_columns;
+  hidden.rows_used = search.digest.rows_used;
+  hidden.most_violating = most_violating(search.digest.rows_used);
+  exact::HiddenRelations found =
+      exact::hidden_relations(search.design, search.digest.sample, hidden);
+  result.chance_of_a_miss = found.chance_of_a_miss;
+  std::vector<NullVector> vectors;
+  add_fresh(search, resting_on_one_row(search), vectors);
+  add_fresh(search, std::move(found.vectors), vectors);
+  std::vector<NullVector> independent;
+  for (const std::size_t i : independent_ones(search, vectors)) independent.push_back(vectors[i]);
+  if (independent.size() > 1)
+    add_fresh(search, exact::readable_basis(search.design, independent), vectors);
+  return vectors;
+}
+
+/// The sentence of a cause that does not speak of every row.
+void fill_cause(const ExceptionSearch& search, const NullVector& vector, std::uint64_t holding,
+                RelationFinding& finding) {
+  std::vector<exact::ColumnSummary> columns;
+  for (const scan::ColumnRecord& record : search.digest.columns)
+    columns.push_back({record.min, record.max, record.nonzero_rows});
+  const exact::Relation relation =
+      exact::describe(search.design, search.schema, vector, columns, holding);
+  finding.cause_kind = exact::word_of(relation.cause);
+  const std::string every = "in all " + grouped(holding) + " rows used";
+  const std::size_t at = relation.cause_text.find(every);
+  if (at == std::string::npos) return;
+  finding.cause_text = relation.cause_text;
+  finding.cause_text.replace(at, every.size(), "in all other rows");
+}
+
+RelationFinding finding_of(const ExceptionSearch& search, const NullVector& vector,
+                           const scan::TestedVector& test) {
+  RelationFinding finding = exact_terms(vector, search.design.columns.size());
+  finding.standing = Standing::exact_except;
+  finding.text = exact::equation(search.design, vector);
+  finding.rows_holding = test.holding;
+  finding.rows_violating = test.violating;
+  finding.largest_residual = residual_text(test.largest_residual);
+  finding.largest_residual_value = test.largest_residual.get_d();
+  fill_cause(search, vector, test.holding, finding);
+  for (const RelationTerm& term : finding.terms) finding.removable.push_back(term.column);
+  finding.violations = violations_of(search.design, search.schema, search.file_names, vector, test);
+  return finding;
 }
 
 }  // namespace
 
-RelationFinding exact_terms(const exact::NullVector& vector, std::size_t columns) {
+RelationFinding exact_terms(const NullVector& vector, std::size_t columns) {
   RelationFinding finding;
   for (std::size_t j = 0; j < columns; ++j) {
     if (vector[j] == 0) continue;
@@ -122,38 +241,35 @@ RelationFinding exact_terms(const exact::NullVector& vector, std::size_t columns
   return finding;
 }
 
-Result<std::vector<RelationFinding>> relations_but_for_rows(const ExceptionSearch& search,
-                                                            Prover& prover) {
-  std::vector<RelationFinding> findings;
-  if (search.digest.rows_used < 5 * search.design.columns.size()) return findings;
-  const std::vector<std::size_t> essential = exact::essential_rows(
-      search.design, search.digest.sample, search.rank, search.digest.random_combination);
-  if (essential.empty()) return findings;
-  std::vector<exact::NullVector> vectors;
-  for (const std::size_t row : essential) {
-    exact::NullVector vector =
-        exact::relation_without_row(search.design, search.digest.sample, search.rank, row);
-    // A level that rests on this row alone needs no pass: the vector is that column.
-    if (relating_columns(search, vector, 1).size() >= 2) vectors.push_back(std::move(vector));
-  }
-  if (vectors.empty()) return findings;
-  Result<std::vector<scan::TestedVector>> tested = prover.test(vectors);
+Result<Exceptions> relations_but_for_rows(const ExceptionSearch& search, Prover& prover) {
+  Exceptions result;
+  if (search.digest.rows_used < 5 * search.design.columns.size()) return result;
+  const std::vector<NullVector> tried = candidates(search, result);
+  if (tried.empty()) return result;
+  Result<std::vector<scan::TestedVector>> tested = prover.test(tried);
   if (!tested) return tested.error();
-  for (std::size_t i = 0; i < vectors.size(); ++i) {
-    const scan::TestedVector& test = tested.value()[i];
-    if (!is_worth_reporting(search, vectors[i], test)) continue;
-    RelationFinding finding = exact_terms(vectors[i], search.design.columns.size());
-    finding.standing = Standing::exact_except;
-    finding.text = exact::equation(search.design, vectors[i]);
-    finding.rows_holding = test.holding;
-    finding.rows_violating = test.violating;
-    finding.largest_residual = residual_text(test.largest_residual);
-    finding.largest_residual_value = test.largest_residual.get_d();
-    for (const RelationTerm& term : finding.terms) finding.removable.push_back(term.column);
-    add_violations(search, vectors[i], test, finding);
-    findings.push_back(std::move(finding));
+  std::vector<std::size_t> worth;
+  for (std::size_t i = 0; i < tried.size(); ++i) {
+    if (is_worth_reporting(search, tried[i], tested.value()[i])) worth.push_back(i);
   }
-  return findings;
+  std::stable_sort(worth.begin(), worth.end(), [&](std::size_t a, std::size_t b) {
+    return std::pair(tested.value()[a].violating, columns_in(tried[a])) <
+           std::pair(tested.value()[b].violating, columns_in(tried[b]));
+  });
+  std::vector<NullVector> sorted;
+  for (const std::size_t i : worth) sorted.push_back(tried[i]);
+  for (const std::size_t i : independent_ones(search, sorted))
+    result.relations.push_back(finding_of(search, sorted[i], tested.value()[worth[i]]));
+  std::stable_sort(result.relations.begin(), result.relations.end(),
+                   [](const RelationFinding& a, const RelationFinding& b) {
+                     const auto key = [](const RelationFinding& f) {
+                       std::vector<int> columns;
+                       for (const RelationTerm& term : f.terms) columns.push_back(term.column);
+                       return std::pair(f.terms.size(), columns);
+                     };
+                     return key(a) < key(b);
+                   });
+  return result;
 }
 
 }  // namespace gramproof::audit

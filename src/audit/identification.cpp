@@ -138,9 +138,11 @@ Result<Identification> identify(const design::Design& design, const table::Schem
   list_relations(design, schema, digest, found);
   fill_coefficients_lost(found, design.columns.size());
   const ExceptionSearch search{design, schema, file_names, digest, rank.value(), found.null_space};
-  Result<std::vector<RelationFinding>> exceptions = relations_but_for_rows(search, prover);
+  Result<Exceptions> exceptions = relations_but_for_rows(search, prover);
   if (!exceptions) return exceptions.error();
-  for (RelationFinding& finding : exceptions.value()) found.relations.push_back(std::move(finding));
+  for (RelationFinding& finding : exceptions.value().relations)
+    found.relations.push_back(std::move(finding));
+  found.chance_of_a_miss = exceptions.value().chance_of_a_miss;
   found.passes = prover.passes();
   return found;
 }

@@ -9,6 +9,7 @@
 #include "audit/figures.hpp"
 #include "audit/identification.hpp"
 #include "audit/rare_levels.hpp"
+#include "audit/rounding_relations.hpp"
 #include "audit/verdict.hpp"
 #include "base/text.hpp"
 #include "exact/relations.hpp"
@@ -190,8 +191,16 @@ Result<void> fill_contrasts(const Request& request, bool too_few_rows, const sca
   return {};
 }
 
-void add_notes(Audit& audit) {
+void add_notes(double chance_of_a_miss, Audit& audit) {
   audit.notes = audit.design.notes;
+  if (chance_of_a_miss > 1e-6) {
+    audit.notes.push_back({"search_cut",
+                           fmt::format("The search for relations that only a few rows break was "
+                                       "cut short for its cost: one that 1 % of the rows break "
+                                       "would be missed with a probability of {}.",
+                                       figure(chance_of_a_miss)),
+                           {}});
+  }
   if (audit.centred_by == CentredBy::none) {
     audit.notes.insert(audit.notes.begin(), {"no_constant",
                                              "The design has no constant and no combination of its "
@@ -269,6 +278,7 @@ Result<Audit> run(table::Source& source, const Request& request) {
   Result<Bound> scanned = scan_design(source, request);
   if (!scanned) return scanned.error();
   Bound& bound = scanned.value();
+  if (request.on_scanned) request.on_scanned(bound.settled, bound.digest);
   const Result<std::vector<std::pair<int, double>>> given = steps_given(request, bound.schema);
   if (!given) return given.error();
   std::vector<std::string> file_names;
@@ -281,6 +291,12 @@ Result<Audit> run(table::Source& source, const Request& request) {
   Result<Identification> found =
       identify(bound.settled.design, bound.schema, file_names, bound.digest, tester);
   if (!found) return found.error();
+  EveryRow every_row(bound.settled.design, bound.schema, file_names, bound.digest,
+                     [&](const scan::Examiner& examiner) {
+                       return scan::examine_all_rows(source, bound.schema, bound.settled.design,
+                                                     examiner, pass);
+                     });
+  if (Result<void> done = judge_rounding(every_row, found.value()); !done) return done.error();
   Audit audit;
   audit.options = request.options;
   audit.solver = request.solver;
@@ -292,6 +308,7 @@ Result<Audit> run(table::Source& source, const Request& request) {
   const std::vector<int> constant_support = found.value().constant_support;
   const std::vector<int> lost = found.value().coefficients_lost;
   const bool too_few_rows = found.value().too_few_rows;
+  const double chance_of_a_miss = found.value().chance_of_a_miss;
   fill_identification(std::move(found.value()), audit);
   audit.rare_levels = rare_levels(audit.design, audit.schema, bound.digest, bound.settled.left_out,
                                   audit.centred_by != CentredBy::none);
@@ -299,7 +316,7 @@ Result<Audit> run(table::Source& source, const Request& request) {
   spare_protected(audit);
   if (Result<void> done = fill_contrasts(request, too_few_rows, bound.digest, audit); !done)
     return done.error();
-  add_notes(audit);
+  add_notes(chance_of_a_miss, audit);
   audit.verdict = verdict_of(audit, lost);
   return audit;
 }
