@@ -90,7 +90,9 @@ Json rank_part(const audit::Audit& audit) {
   Json part = {{"rank", rank.rank},
                {"columns", rank.columns},
                {"nullity", rank.nullity},
-               {"proved", rank.proved}};
+               {"proved", rank.proved},
+               {"numerical", rank.numerical}};
+  if (rank.rank_of_the_doubles) part["rank_of_the_doubles"] = *rank.rank_of_the_doubles;
   if (rank.certificate) part["certificate"] = certificate_part(audit, *rank.certificate);
   return part;
 }

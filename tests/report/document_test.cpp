@@ -108,7 +108,7 @@ TEST_CASE("a figure that is not built is an absent key") {
   audit.rank.certificate.reset();
   const Json document = report::verdict_document(audit, "0.1.0");
   CHECK_FALSE(document["rank"].contains("certificate"));
-  CHECK_FALSE(document["rank"].contains("numerical"));
+  CHECK_FALSE(document["rank"].contains("rank_of_the_doubles"));
   CHECK_FALSE(document["inflation"][0].contains("identifying_rows"));
   CHECK(document["verdict"]["after_leaving_out"].is_null());
   CHECK(document["source"]["filter"].is_null());

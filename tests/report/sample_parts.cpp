@@ -49,7 +49,7 @@ void add_column(Audit& audit, const std::string& label, const std::string& term,
   audit.column_norms.conservativeResize(place + 1);
   audit.column_norms[place] = 1.5 * std::sqrt(static_cast<double>(audit.rows_used));
   audit.kept.push_back(place);
-  audit.rank.columns = audit.rank.rank = audit.kept.size();
+  audit.rank.columns = audit.rank.rank = audit.rank.numerical = audit.kept.size();
   audit.residual_degrees_of_freedom =
       static_cast<std::int64_t>(audit.rows_used) - static_cast<std::int64_t>(audit.kept.size());
 }
@@ -141,7 +141,7 @@ void add_square(Audit& audit, int column) {
 void leave_out(Audit& audit, int column) {
   audit.kept.erase(std::remove(audit.kept.begin(), audit.kept.end(), column), audit.kept.end());
   audit.left_out.insert(audit.left_out.begin(), column);
-  audit.rank.rank = audit.kept.size();
+  audit.rank.rank = audit.rank.numerical = audit.kept.size();
   audit.rank.nullity = audit.rank.columns - audit.rank.rank;
   audit.residual_degrees_of_freedom =
       static_cast<std::int64_t>(audit.rows_used) - static_cast<std::int64_t>(audit.kept.size());

@@ -89,6 +89,11 @@ def size_faults(document):
     kept = len(document["kept"])
     if rank["rank"] + rank["nullity"] != rank["columns"]:
         yield "rank: rank and nullity do not add up to columns"
+    within = sum(relation["standing"] == "within_rounding" for relation in document["relations"])
+    if rank["numerical"] != rank["rank"] - within:
+        yield "rank: numerical is not rank less the relations within rounding"
+    if rank.get("rank_of_the_doubles", 0) > rank["columns"]:
+        yield "rank: the doubles have more rank than columns"
     if len(document["design"]["columns"]) != kept + len(document["left_out"]):
         yield "kept and left_out are not the columns of the design"
     if len(conditioning["proportions"]) != len(conditioning["proportions_rows"]):
@@ -129,6 +134,7 @@ def damages(document):
     yield damaged("a state that lies", lambda d: d["conditioning"].update(condition_number_state="infinite"))
     yield damaged("an unknown column", lambda d: d["kept"].__setitem__(0, "nowhere"))
     yield damaged("a lost column", lambda d: d["kept"].pop())
+    yield damaged("a numerical rank above the rank", lambda d: d["rank"].update(numerical=d["rank"]["rank"] + 1))
     yield damaged("another version", lambda d: d.update(schema_version=2))
     yield damaged("a node unknown", lambda d: d["design"]["columns"][0].update(definition={"sine": [{"cell": "x"}]}))
     yield damaged("an exact number as a double", lambda d: d["design"]["columns"][0].update(definition={"number": 0.1}))

@@ -1,0 +1,15 @@
+// src/audit/rounding_relations.hpp - what exact arithmetic on decimals cannot settle: columns with
+// log, sqrt, exp or asinh, and what becomes of X when its entries are doubles.
+#pragma once
+
+#include "audit/every_row.hpp"
+#include "audit/identification.hpp"
+#include "base/result.hpp"
+
+namespace gramproof::audit {
+
+/// Completes an identification (methods: 2, items 4 and 5): Rank::rank_of_the_doubles is filled.
+/// Errors: those of the passes it asks for, which are added to `found.passes`.
+[[nodiscard]] Result<void> judge_rounding(EveryRow& every_row, Identification& found);
+
+}  // namespace gramproof::audit
