@@ -76,8 +76,8 @@ class FlintMatrix {
 /// rows x columns residues, zero at first.
 class ResidueMatrix {
  public:
-  ResidueMatrix(std::size_t rows, std::size_t columns, std::uint64_t prime) {
-    nmod_mat_init(matrix_, static_cast<slong>(rows), static_cast<slong>(columns), prime);
+  ResidueMatrix(std::size_t rows, std::size_t columns, std::uint64_t modulus) {
+    nmod_mat_init(matrix_, static_cast<slong>(rows), static_cast<slong>(columns), modulus);
   }
   ResidueMatrix(const ResidueMatrix&) = delete;
   ResidueMatrix& operator=(const ResidueMatrix&) = delete;
@@ -85,6 +85,9 @@ class ResidueMatrix {
 
   [[nodiscard]] nmod_mat_struct* get() { return matrix_; }
   [[nodiscard]] std::uint64_t& at(std::size_t row, std::size_t column) {
+    return matrix_->rows[row][column];
+  }
+  [[nodiscard]] std::uint64_t at(std::size_t row, std::size_t column) const {
     return matrix_->rows[row][column];
   }
 

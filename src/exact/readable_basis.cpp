@@ -7,6 +7,7 @@
 #include "exact/modular.hpp"
 #include "exact/null_space.hpp"
 #include "exact/relations.hpp"
+#include "exact/short_relations.hpp"
 #include "exact/structural.hpp"
 
 namespace gramproof::exact {
@@ -157,6 +158,12 @@ void shorten_pairwise(std::vector<NullVector>& basis) {
   }
 }
 
+std::size_t most_columns_of(const std::vector<NullVector>& basis) {
+  std::size_t most = 0;
+  for (const NullVector& vector : basis) most = std::max(most, cost_of(vector).columns);
+  return most;
+}
+
 }  // namespace
 
 std::vector<NullVector> readable_basis(const design::Design& design,
@@ -170,6 +177,10 @@ std::vector<NullVector> readable_basis(const design::Design& design,
     for (NullVector& vector : space.reduced_lattice()) pool.push_back(std::move(vector));
   }
   std::vector<NullVector> basis = cheapest_basis(space, std::move(pool));
+  shorten_pairwise(basis);
+  pool = short_relations(space, most_columns_of(basis));
+  pool.insert(pool.end(), basis.begin(), basis.end());
+  basis = cheapest_basis(space, std::move(pool));
   shorten_pairwise(basis);
   sort_by_cost(basis);
   return basis;

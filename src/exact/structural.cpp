@@ -10,8 +10,8 @@
 #include <unordered_map>
 #include <utility>
 
-#include "exact/flint_types.hpp"
 #include "exact/modular.hpp"
+#include "exact/small_fraction.hpp"
 
 namespace gramproof::exact {
 namespace {
@@ -51,7 +51,9 @@ class Search {
     return sum;
   }
   [[nodiscard]] bool is_constant(std::size_t j) const { return constant_ && *constant_ == j; }
-  [[nodiscard]] std::optional<mpq_class> fraction(std::uint64_t residue) const;
+  [[nodiscard]] std::optional<mpq_class> fraction(std::uint64_t residue) const {
+    return small_fraction(residue, field_);
+  }
   [[nodiscard]] std::uint64_t ratio(std::uint64_t a, std::uint64_t b) const {
     return b == 0 ? 0 : field_.multiply(a, field_.inverse(b));
   }
@@ -67,17 +69,6 @@ class Search {
   std::unordered_map<std::uint64_t, std::size_t> column_of_;
   std::set<NullVector> found_;
 };
-
-/// A residue as a fraction of numbers below 2^30, if it is one.
-std::optional<mpq_class> Search::fraction(std::uint64_t residue) const {
-  FlintInteger numerator, denominator, a, m;
-  fmpz_set_ui(a.get(), residue);
-  fmpz_set_ui(m.get(), field_.value());
-  if (_fmpq_reconstruct_fmpz(numerator.get(), denominator.get(), a.get(), m.get()) == 0) {
-    return std::nullopt;
-  }
-  return mpq_class(numerator.to_mpz(), denominator.to_mpz());
-}
 
 void Search::keep(const Terms& terms) {
   NullVector vector(design_.columns.size() + 1, 0);

@@ -25,11 +25,11 @@ struct Experiment {
 
 // Spans are theorems: all of them. For the shortest basis no fast method is known (to find the
 // sparsest null vector is NP-hard: Coleman & Pothen 1986, SIAM J. Algebraic Discrete Methods 7), so
-// some may be longer. 98 % of 1,000 were seen not to be; a basis straight from elimination reaches
-// a third.
+// some may be longer. Of 1,000 none was seen to be; without relations found by chance 18 are, and
+// 536 of the bases that elimination gives.
 constexpr Experiment experiments[] = {
     {"spans", gramproof::test::try_span, 1.0, "span of the planted relations recovered"},
-    {"lengths", gramproof::test::try_length, 0.97, "basis no longer than the planted one"},
+    {"lengths", gramproof::test::try_length, 0.99, "basis no longer than the planted one"},
 };
 
 std::optional<std::uint64_t> number(const char* text) {
