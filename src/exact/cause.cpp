@@ -2,11 +2,10 @@
 #include "exact/cause.hpp"
 
 #include <algorithm>
-#include <array>
-#include <cctype>
 #include <optional>
 #include <set>
-#include <string_view>
+
+#include "exact/clock.hpp"
 
 namespace gramproof::exact {
 namespace {
@@ -37,6 +36,15 @@ std::uint64_t ones_of(const Evidence& e, const Terms& side) {
   return rows;
 }
 
+/// The levels of a column but for those of one set.
+std::set<std::pair<int, int>> others_of(const design::DesignColumn& column, int set) {
+  std::set<std::pair<int, int>> others;
+  for (const design::LevelUse& use : column.levels) {
+    if (use.set != set) others.emplace(use.set, use.level);
+  }
+  return others;
+}
+
 /// The set whose levels tell the columns of a side apart, each with the same other levels; -1:
 /// none.
 int common_set(const Evidence& e, const Terms& side) {
@@ -45,38 +53,44 @@ int common_set(const Evidence& e, const Terms& side) {
     std::set<int> levels;
     std::set<std::set<std::pair<int, int>>> others;
     for (const auto& term : side) {
-      std::set<std::pair<int, int>> rest;
       for (const design::LevelUse& use : column_of(e, term).levels) {
-        if (use.set == candidate.set) {
-          levels.insert(use.level);
-        } else {
-          rest.emplace(use.set, use.level);
-        }
+        if (use.set == candidate.set) levels.insert(use.level);
       }
-      others.insert(rest);
+      others.insert(others_of(column_of(e, term), candidate.set));
     }
     if (levels.size() == side.size() && others.size() == 1) return candidate.set;
   }
   return -1;
 }
 
+/// The table columns that a column is made of, but for that of a set.
+std::vector<int> sources_without(const Evidence& e, const design::DesignColumn& column, int set) {
+  std::vector<int> sources = column.sources;
+  std::erase(sources, e.design.level_sets[static_cast<std::size_t>(set)].column);
+  return sources;
+}
+
 /// True if a side's columns are the products of a full set of levels with the other side's column.
 bool products_with_full_set(const Evidence& e) {
   const int set = common_set(e, e.sides.left);
   if (set < 0 || e.sides.right.size() != 1 || e.sides.number != 0) return false;
-  const auto others = [set](const design::DesignColumn& column) {
-    std::set<std::pair<int, int>> rest;
-    for (const design::LevelUse& use : column.levels) {
-      if (use.set != set) rest.emplace(use.set, use.level);
-    }
-    return rest;
-  };
-  const design::DesignColumn& first = column_of(e, e.sides.left.front());
-  const design::DesignColumn& total = column_of(e, e.sides.right.front());
-  // The sources of the total are those of the products but for the set's own column.
-  std::vector<int> sources = first.sources;
-  std::erase(sources, e.design.level_sets[static_cast<std::size_t>(set)].column);
-  return others(first) == others(total) && total.sources == sources;
+  const design::DesignColumn& part = column_of(e, e.sides.left.front());
+  const design::DesignColumn& whole = column_of(e, e.sides.right.front());
+  return others_of(part, set) == others_of(whole, set) &&
+         sources_without(e, part, set) == whole.sources;
+}
+
+/// True if a side's columns are products of finer levels, and the other side the product of the
+/// level they lie in with the same column.
+bool products_with_nested_levels(const Evidence& e) {
+  const int fine = common_set(e, e.sides.left);
+  if (fine < 0 || e.sides.right.size() != 1) return false;
+  const design::DesignColumn& part = column_of(e, e.sides.left.front());
+  const design::DesignColumn& whole = column_of(e, e.sides.right.front());
+  return std::any_of(whole.levels.begin(), whole.levels.end(), [&](const design::LevelUse& use) {
+    return others_of(part, fine) == others_of(whole, use.set) &&
+           sources_without(e, part, fine) == sources_without(e, whole, use.set);
+  });
 }
 
 bool is_level_set(const Evidence& e) {
@@ -90,10 +104,17 @@ bool is_level_set(const Evidence& e) {
          ones_of(e, s.right) == e.rows;
 }
 
+/// The rows of the left columns are those of the right one; or levels of a finer set are levels of
+/// a coarser one.
 bool is_nested(const Evidence& e) {
   const Sides& s = e.sides;
-  return s.number == 0 && s.left.size() >= 2 && !s.right.empty() && all_ones(s.left) &&
-         all_ones(s.right) && all_zero_one(e, s.left) && all_zero_one(e, s.right);
+  if (s.number != 0 || s.left.size() < 2 || s.right.empty() || !all_ones(s.left) ||
+      !all_ones(s.right)) {
+    return false;
+  }
+  if (products_with_nested_levels(e)) return true;
+  if (!all_zero_one(e, s.left) || !all_zero_one(e, s.right)) return false;
+  return s.right.size() == 1 || (common_set(e, s.left) >= 0 && common_set(e, s.right) >= 0);
 }
 
 bool looks_like_year(const Evidence& e, const Terms::value_type& term) {
@@ -103,38 +124,13 @@ bool looks_like_year(const Evidence& e, const Terms::value_type& term) {
   return e.schema.columns[static_cast<std::size_t>(column.sources.front())].all_whole;
 }
 
-/// A word of time as a part of the label: "age" in "age_at_entry", not in "wage".
-bool named_for_time(const std::string& label) {
-  constexpr std::array<std::string_view, 14> words = {
-      "age",    "birth", "born", "year",       "period",   "cohort", "wave",
-      "tenure", "time",  "date", "experience", "duration", "entry",  "start"};
-  std::string word;
-  for (const char c : label + " ") {
-    if (std::isalpha(static_cast<unsigned char>(c)) != 0) {
-      word += static_cast<char>(std::tolower(static_cast<unsigned char>(c)));
-      continue;
-    }
-    if (std::find(words.begin(), words.end(), word) != words.end()) return true;
-    word.clear();
-  }
-  return false;
-}
-
 bool is_clock(const Evidence& e) {
   const Sides& s = e.sides;
-  if (s.columns() != 3 || s.right.size() != 1 || !all_ones(s.left) || !all_ones(s.right)) {
-    return false;
-  }
-  const std::array<Terms::value_type, 3> terms = {s.left[0], s.left[1], s.right[0]};
-  const auto count = [&](auto&& test) { return std::count_if(terms.begin(), terms.end(), test); };
-  // Age, year and birth are columns of their own: parts of one column, or products, are no clocks.
-  if (count([&](const auto& t) {
-        return column_of(e, t).definition->operation == design::Operation::cell;
-      }) != 3)
-    return false;
-  const auto years = count([&](const auto& t) { return looks_like_year(e, t); });
-  const auto named = count([&](const auto& t) { return named_for_time(column_of(e, t).label); });
-  return years >= 2 || named >= 2;
+  if (!is_sum_of_plain_columns(e.design, s)) return false;
+  if (is_clock_by_name(e.design, s)) return true;
+  return looks_like_year(e, s.left[0]) + looks_like_year(e, s.left[1]) +
+             looks_like_year(e, s.right[0]) >=
+         2;
 }
 
 std::optional<Cause> cause_of_one(const Evidence& e) {
@@ -170,12 +166,19 @@ bool is_total(const Evidence& e) {
 
 }  // namespace
 
+bool is_overlap(const Evidence& e) {
+  const Sides& s = e.sides;
+  return s.left.size() >= 2 && !s.right.empty() && all_ones(s.left) && all_ones(s.right) &&
+         all_zero_one(e, s.left) && all_zero_one(e, s.right) && !is_level_set(e) && !is_nested(e);
+}
+
 Cause cause_of(const Evidence& e) {
   if (const auto cause = cause_of_one(e)) return *cause;
   if (is_level_set(e)) return Cause::level_set;
   if (is_nested(e)) return Cause::nested_levels;
   // Any m columns are dependent on fewer than m rows, whatever they mean: no story is told then.
   if (e.rows < e.sides.columns() + (e.sides.has_constant ? 1 : 0)) return Cause::too_few_rows;
+  if (is_overlap(e)) return Cause::level_set;
   if (const auto cause = cause_of_two(e)) return *cause;
   if (is_clock(e)) return Cause::clock_identity;
   if (is_total(e)) return Cause::parts_and_total;

@@ -17,6 +17,10 @@ struct Evidence {
 
 [[nodiscard]] Cause cause_of(const Evidence& evidence);
 
+/// 0/1 columns that count the rows in two ways, though no set of them is full and none lies in
+/// another: a + b = either + both. A level_set, told in other words.
+[[nodiscard]] bool is_overlap(const Evidence& evidence);
+
 /// One sentence, with full stop, in the analyst's words.
 [[nodiscard]] std::string sentence_of(const Evidence& evidence, Cause cause);
 

@@ -50,7 +50,23 @@ std::string set_name(const Evidence& e, const Terms& side) {
   return "";
 }
 
+bool all_zero_one(const Evidence& e, const Terms& side) {
+  return std::all_of(side.begin(), side.end(),
+                     [&](const auto& term) { return e.design.columns[term.first].zero_one; });
+}
+
+std::string of_overlap(const Evidence& e) {
+  const Sides& s = e.sides;
+  const std::string difference = number_text(abs(s.number));
+  return "Counting the ones in a row, " + listed(e, s.left) + " have " +
+         (s.number == 0  ? "as many as "
+          : s.number > 0 ? difference + " more than "
+                         : difference + " fewer than ") +
+         listed(e, s.right) + ": these 0/1 columns mark sets of rows that overlap.";
+}
+
 std::string of_level_set(const Evidence& e) {
+  if (is_overlap(e)) return of_overlap(e);
   const std::string name = set_name(e, e.sides.left);
   if (e.sides.right.size() == 1) {
     return "Each row used has one level of " + name +
@@ -73,14 +89,33 @@ std::string of_level_set(const Evidence& e) {
          " is 1 in each row used, so together they repeat the constant.";
 }
 
+/// The name of the table column of the level that a column has and another has not.
+std::string other_set_name(const Evidence& e, const Terms::value_type& term,
+                           const Terms::value_type& without) {
+  const auto& known = e.design.columns[without.first].levels;
+  for (const design::LevelUse& use : e.design.columns[term.first].levels) {
+    const bool shared = std::any_of(known.begin(), known.end(),
+                                    [&](const design::LevelUse& k) { return k.set == use.set; });
+    if (shared) continue;
+    const int column = e.design.level_sets[static_cast<std::size_t>(use.set)].column;
+    return e.schema.columns[static_cast<std::size_t>(column)].name;
+  }
+  return "another set";
+}
+
 std::string of_nested(const Evidence& e) {
-  const std::string name = set_name(e, e.sides.left);
-  const std::string parts = name.empty()
-                                ? listed(e, e.sides.left)
-                                : std::to_string(e.sides.left.size()) + " levels of " + name;
-  const bool one = e.sides.right.size() == 1;
-  return "The rows of " + parts + " together are exactly those of " + listed(e, e.sides.right) +
-         (one ? ": the finer levels lie inside it." : ": the finer levels lie inside them.");
+  const Sides& s = e.sides;
+  const std::string name = set_name(e, s.left);
+  const std::string parts =
+      name.empty() ? listed(e, s.left) : std::to_string(s.left.size()) + " levels of " + name;
+  if (!all_zero_one(e, s.left)) {
+    return "The rows of " + parts + " together are exactly those of one level of " +
+           other_set_name(e, s.right.front(), s.left.front()) +
+           ", so the products with them add up to " + label(e, s.right.front()) + ".";
+  }
+  return "The rows of " + parts + " together are exactly those of " + listed(e, s.right) +
+         (s.right.size() == 1 ? ": the finer levels lie inside it."
+                              : ": the finer levels lie inside them.");
 }
 
 std::string of_constant(const Evidence& e) {
@@ -116,6 +151,22 @@ std::string of_conversion(const Evidence& e) {
   return text + " " + in_every_row(e);
 }
 
+std::string of_duplicate(const Evidence& e) {
+  const bool marks = all_zero_one(e, e.sides.left) && all_zero_one(e, e.sides.right);
+  return label(e, e.sides.left[0]) + " and " + label(e, e.sides.right[0]) + " are equal " +
+         in_every_row(e) + (marks ? ": both mark the same rows." : ": the same column twice.");
+}
+
+std::string of_fixed_sum(const Evidence& e) {
+  const Terms& parts = e.sides.left;
+  const std::string sum = number_text(e.sides.number);
+  const std::string end = ": any one of them follows from the others and the constant.";
+  if (all_zero_one(e, parts)) {
+    return "Exactly " + sum + " of " + listed(e, parts) + " are 1 in each row used" + end;
+  }
+  return listed(e, parts) + " add up to " + sum + " " + in_every_row(e) + end;
+}
+
 std::string of_too_few(const Evidence& e) {
   const std::size_t tied = e.sides.columns() + (e.sides.has_constant ? 1 : 0);
   return "Only " + counted(e.rows, "row is", "rows are") + " used: any " + std::to_string(tied) +
@@ -148,8 +199,7 @@ std::string sentence_of(const Evidence& e, Cause cause) {
     case Cause::constant_column:
       return of_constant(e);
     case Cause::duplicate:
-      return label(e, s.left[0]) + " and " + label(e, s.right[0]) + " are equal " +
-             in_every_row(e) + ": the same column twice.";
+      return of_duplicate(e);
     case Cause::multiple:
       return of_conversion(e) + ": they say the same.";
     case Cause::unit_conversion:
@@ -162,8 +212,7 @@ std::string sentence_of(const Evidence& e, Cause cause) {
       return label(e, s.right[0]) + " is the sum of " + listed(e, s.left) + " " + in_every_row(e) +
              ": a total beside all its parts.";
     case Cause::fixed_sum:
-      return listed(e, s.left) + " add up to " + number_text(s.number) + " " + in_every_row(e) +
-             ": any one of them follows from the others and the constant.";
+      return of_fixed_sum(e);
     case Cause::clock_identity:
       return of_clock(e);
     case Cause::too_few_rows:
@@ -188,9 +237,9 @@ Relation describe(const design::Design& design, const table::Schema& schema,
   const Evidence evidence{design, schema, columns, rows, sides_of(design, vector)};
   Relation relation;
   relation.coefficients = vector;
-  relation.text = equation(design, vector);
   // The constant alone cannot be zero; a relation without columns has no story.
   relation.cause = evidence.sides.columns() == 0 ? Cause::other : cause_of(evidence);
+  relation.text = equation_of(design, evidence.sides, relation.cause == Cause::clock_identity);
   relation.cause_text = sentence_of(evidence, relation.cause);
   for (std::size_t j = 0; j < design.columns.size(); ++j) {
     if (vector[j] != 0) relation.removable.push_back(static_cast<int>(j));

@@ -2,6 +2,7 @@
 #include <algorithm>
 #include <utility>
 
+#include "exact/clock.hpp"
 #include "exact/relations.hpp"
 #include "exact/sides.hpp"
 
@@ -106,6 +107,13 @@ bool names_constant(const design::Design& design, const Sides& sides) {
                      [&](const auto& term) { return !design.columns[term.first].levels.empty(); });
 }
 
+/// year - age = birth_year: of three counts of time the one written last is what the others give.
+std::string difference_text(const design::Design& design, const Sides& sides) {
+  return term_text(design, sides.right.front().first, 1) + " " + minus + " " +
+         term_text(design, sides.left.front().first, 1) + " = " +
+         term_text(design, sides.left.back().first, 1);
+}
+
 std::string constant_label(const design::Design& design) {
   for (const design::DesignColumn& column : design.columns) {
     if (column.constant) return column.label;
@@ -152,9 +160,11 @@ Sides sides_of(const design::Design& design, const NullVector& vector) {
   return sides;
 }
 
-std::string equation(const design::Design& design, const NullVector& vector) {
-  const Sides sides = sides_of(design, vector);
+std::string equation_of(const design::Design& design, const Sides& sides, bool clock) {
   if (sides.columns() == 0) return constant_label(design) + " = 0";
+  if (clock && sides.number == 0 && sides.left.back().first > sides.right.front().first) {
+    return difference_text(design, sides);
+  }
   const bool cut = sides.columns() > long_relation;
   std::vector<std::string> left = terms_text(design, sides.left, cut);
   std::vector<std::string> right = terms_text(design, sides.right, cut);
@@ -169,6 +179,11 @@ std::string equation(const design::Design& design, const NullVector& vector) {
   // a = b + 3 with its only sum to the right would read backwards.
   if (left.size() == 1 && right.size() > 1) std::swap(left, right);
   return joined(left) + " = " + joined(right);
+}
+
+std::string equation(const design::Design& design, const NullVector& vector) {
+  const Sides sides = sides_of(design, vector);
+  return equation_of(design, sides, is_clock_by_name(design, sides));
 }
 
 }  // namespace gramproof::exact

@@ -42,19 +42,29 @@ std::vector<std::size_t> support_of(const NullVector& vector) {
 }
 
 /// By cost, then by place in the design: a total order, so that the result never depends on the
-/// order in which vectors were found.
-void sort_by_cost(std::vector<NullVector>& vectors) {
+/// order in which vectors were found. At equal cost what adds up to the constant comes first: of
+/// a + b + c = 1, a + d + e = 1 and b + c = d + e the first two are told.
+void sort_by_cost(const design::Design& design, std::vector<NullVector>& vectors) {
   struct Entry {
     Cost cost;
+    bool without_constant;
     std::vector<std::size_t> support;
     NullVector vector;
+    auto key() const { return std::tie(cost.reading, cost.columns, without_constant, cost.size); }
+  };
+  const auto uses_constant = [&](const std::vector<std::size_t>& support) {
+    return std::any_of(support.begin(), support.end(), [&](std::size_t j) {
+      return j < design.columns.size() && design.columns[j].constant;
+    });
   };
   std::vector<Entry> entries;
   for (NullVector& vector : vectors) {
-    entries.push_back({cost_of(vector), support_of(vector), std::move(vector)});
+    std::vector<std::size_t> support = support_of(vector);
+    const bool without_constant = !uses_constant(support);
+    entries.push_back({cost_of(vector), without_constant, std::move(support), std::move(vector)});
   }
   std::sort(entries.begin(), entries.end(), [](const Entry& a, const Entry& b) {
-    if (a.cost.key() != b.cost.key()) return a.cost < b.cost;
+    if (a.key() != b.key()) return a.key() < b.key();
     if (a.support != b.support) return a.support < b.support;
     return a.vector > b.vector;
   });
@@ -94,10 +104,11 @@ class Independence {
 
 /// The cheapest basis that the pool holds: taking independent vectors in order of cost is optimal,
 /// linear independence being a matroid.
-std::vector<NullVector> cheapest_basis(const NullSpace& space, std::vector<NullVector> pool) {
+std::vector<NullVector> cheapest_basis(const design::Design& design, const NullSpace& space,
+                                       std::vector<NullVector> pool) {
   const Modulus field(prime);
   Independence independence(field);
-  sort_by_cost(pool);
+  sort_by_cost(design, pool);
   std::vector<NullVector> basis;
   for (NullVector& vector : pool) {
     if (basis.size() == space.basis().size()) break;
@@ -176,13 +187,13 @@ std::vector<NullVector> readable_basis(const design::Design& design,
   if (space.affordable()) {
     for (NullVector& vector : space.reduced_lattice()) pool.push_back(std::move(vector));
   }
-  std::vector<NullVector> basis = cheapest_basis(space, std::move(pool));
+  std::vector<NullVector> basis = cheapest_basis(design, space, std::move(pool));
   shorten_pairwise(basis);
   pool = short_relations(space, most_columns_of(basis));
   pool.insert(pool.end(), basis.begin(), basis.end());
-  basis = cheapest_basis(space, std::move(pool));
+  basis = cheapest_basis(design, space, std::move(pool));
   shorten_pairwise(basis);
-  sort_by_cost(basis);
+  sort_by_cost(design, basis);
   return basis;
 }
 

@@ -21,8 +21,9 @@ enum class Cause : std::uint8_t {
   multiple,         ///< a whole number times the other, either way
   unit_conversion,  ///< another factor, or a factor and an offset
   level_set,        ///< levels that leave no row out: they add up to 1, to another such set, or
-                    ///< their products with a column to that column
-  nested_levels,    ///< levels add up to a level of a coarser set
+                    ///< their products with a column to that column; or 0/1 columns of
+                    ///< overlapping sets that count the rows in two ways
+  nested_levels,    ///< levels add up to a level of a coarser set, or their products do
   empty_cell,       ///< a product that is 0 because no row has the levels together
   parts_and_total,  ///< a column is the sum of others
   fixed_sum,        ///< columns add up to one value
@@ -51,11 +52,12 @@ struct ColumnSummary {
 
 /// A readable basis of the space of relations spanned by `null_vectors` (on the design columns;
 /// vectors that use the ones column are not relations and must not be passed): the cheapest to read
-/// among structural relations, the saturated lattice reduced by LLL and the vectors given, then
-/// shortened in pairs. A column costs 8 and each bit of its coefficient after the first 1, so that
-/// a coefficient of three digits weighs as much as one more column. Spans the same space; cheapest
-/// first; the same vectors give the same basis. Beyond a budget by bits x nullity^2 the lattice is
-/// left out, beyond another shortening ends early.
+/// among structural relations, the saturated lattice reduced by LLL and the vectors given,
+/// shortened in pairs and held against relations of few columns (short_relations.hpp). A column
+/// costs 8 and each bit of its coefficient after the first 1, so that a coefficient of three digits
+/// weighs as much as one more column. Spans the same space; cheapest first; the same vectors give
+/// the same basis. Beyond a budget by bits x nullity^2 the lattice is left out, beyond another
+/// shortening ends early.
 [[nodiscard]] std::vector<NullVector> readable_basis(const design::Design& design,
                                                      const std::vector<NullVector>& null_vectors);
 
@@ -65,8 +67,8 @@ struct ColumnSummary {
                                 std::uint64_t rows);
 
 /// Only the equation, as a person would write it: positive terms on both sides, a lone column or
-/// number to the right. More than eight terms on a side of a relation of more than twelve columns
-/// are cut to the first six and the last.
+/// number to the right; three counts of time as a difference. More than eight terms on a side of a
+/// relation of more than twelve columns are cut to the first six and the last.
 [[nodiscard]] std::string equation(const design::Design& design, const NullVector& vector);
 
 }  // namespace gramproof::exact

@@ -99,7 +99,7 @@ TEST_CASE("exact relations: found, named, and what is left out") {
               return three(age, year, year - age);
             }),
        "constant, age, period, birth",
-       "age + birth = period",
+       "period \u2212 age = birth",
        "clock_identity",
        {"birth"}},
       {"a total beside its parts, in cents",

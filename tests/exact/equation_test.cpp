@@ -59,7 +59,19 @@ TEST_CASE("equations as a person writes them") {
       {"period, age, birth",
        {"birth_year", "interview_year", "age"},
        {"1", "-1", "1", "0"},
+       "interview_year \u2212 birth_year = age"},
+      {"the year last is what the others add up to",
+       {"birth_year", "age", "interview_year"},
+       {"1", "1", "-1", "0"},
        "birth_year + age = interview_year"},
+      {"the year first, the birth last",
+       {"year", "age", "birth_year"},
+       {"1", "-1", "-1", "0"},
+       "year \u2212 age = birth_year"},
+      {"no time is counted in wages",
+       {"wage", "bonus", "pay"},
+       {"1", "-1", "-1", "0"},
+       "bonus + pay = wage"},
   };
   for (const Case& c : cases) {
     CAPTURE(c.why);
