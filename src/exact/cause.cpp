@@ -143,6 +143,10 @@ std::optional<Cause> cause_of_one(const Evidence& e) {
   return crossed ? Cause::empty_cell : Cause::zero_column;
 }
 
+bool never_changes(const Evidence& e, const Terms::value_type& term) {
+  return e.columns[term.first].min == e.columns[term.first].max;
+}
+
 std::optional<Cause> cause_of_two(const Evidence& e) {
   const Sides& s = e.sides;
   if (s.columns() != 2) return std::nullopt;
@@ -153,15 +157,18 @@ std::optional<Cause> cause_of_two(const Evidence& e) {
   if (s.right.empty()) return Cause::multiple;  // a + 2 b = 0
   const mpq_class &a = s.left[0].second, &b = s.right[0].second;
   if (a == b) return Cause::duplicate;
+  if (never_changes(e, s.left[0]) && never_changes(e, s.right[0])) return Cause::constant_column;
   return a == 1 || b == 1 ? Cause::multiple : Cause::unit_conversion;
 }
 
+/// Of three columns that may be negative any one is as much a difference as another is a sum.
 bool is_total(const Evidence& e) {
   const Sides& s = e.sides;
-  if (s.number != 0 || s.right.size() != 1 || !all_ones(s.right) || s.left.size() < 2) return false;
-  return all_ones(s.left) && std::all_of(s.left.begin(), s.left.end(), [&](const auto& term) {
-           return e.columns[term.first].min >= 0;
-         });
+  if (s.number != 0 || s.right.size() != 1 || !all_ones(s.right) || !all_ones(s.left)) return false;
+  return s.left.size() > 2 ||
+         (s.left.size() == 2 && std::all_of(s.left.begin(), s.left.end(), [&](const auto& term) {
+            return e.columns[term.first].min >= 0;
+          }));
 }
 
 }  // namespace

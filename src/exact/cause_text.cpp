@@ -5,6 +5,7 @@
 
 #include "base/text.hpp"
 #include "exact/cause.hpp"
+#include "exact/clock.hpp"
 
 namespace gramproof::exact {
 namespace {
@@ -12,6 +13,15 @@ namespace {
 using Terms = Sides::Terms;
 
 constexpr std::size_t most_named = 6;
+
+/// A longer factor says nothing in a sentence: the equation has it.
+constexpr std::size_t most_digits_told = 24;
+
+/// Told and written as a difference: three counts of time, or a column that may be negative.
+bool is_difference(const Evidence& e, Cause cause) {
+  return (cause == Cause::clock_identity || cause == Cause::other) &&
+         is_plain_difference(e.design, e.sides);
+}
 
 std::string label(const Evidence& e, const Terms::value_type& term) {
   return e.design.columns[term.first].label;
@@ -119,6 +129,11 @@ std::string of_nested(const Evidence& e) {
 }
 
 std::string of_constant(const Evidence& e) {
+  if (e.sides.columns() == 2) {
+    return "Neither " + label(e, e.sides.left[0]) + " nor " + label(e, e.sides.right[0]) +
+           " changes " + in_every_row(e) +
+           ": columns that never change are multiples of each other.";
+  }
   return label(e, e.sides.left.front()) + " is " + number_text(e.sides.number) + " " +
          in_every_row(e) + ": a column that never changes repeats the constant.";
 }
@@ -141,6 +156,11 @@ std::string of_conversion(const Evidence& e) {
     std::swap(from, to);
     factor = back_factor;
     offset = back_offset;
+  }
+  if (number_text(factor).size() > most_digits_told ||
+      number_text(offset).size() > most_digits_told) {
+    return label(e, to) + " is a fixed multiple of " + label(e, from) +
+           (offset == 0 ? " " : ", and a number more, ") + in_every_row(e);
   }
   std::string text = label(e, to) + " is ";
   text += factor == 1    ? label(e, from)
@@ -180,6 +200,11 @@ std::string of_clock(const Evidence& e) {
 }
 
 std::string of_other(const Evidence& e) {
+  if (is_difference(e, Cause::other)) {
+    const auto& given = e.sides.left.back();
+    return label(e, given) + " is " + label(e, e.sides.right[0]) + " less " +
+           label(e, e.sides.left[0]) + " " + in_every_row(e) + ".";
+  }
   const bool lone = e.sides.right.size() == 1 && e.sides.right.front().second == 1;
   const std::string which = lone ? label(e, e.sides.right.front()) + " follows from the others"
                                  : "Any one of these columns follows from the others";
@@ -239,7 +264,7 @@ Relation describe(const design::Design& design, const table::Schema& schema,
   relation.coefficients = vector;
   // The constant alone cannot be zero; a relation without columns has no story.
   relation.cause = evidence.sides.columns() == 0 ? Cause::other : cause_of(evidence);
-  relation.text = equation_of(design, evidence.sides, relation.cause == Cause::clock_identity);
+  relation.text = equation_of(design, evidence.sides, is_difference(evidence, relation.cause));
   relation.cause_text = sentence_of(evidence, relation.cause);
   for (std::size_t j = 0; j < design.columns.size(); ++j) {
     if (vector[j] != 0) relation.removable.push_back(static_cast<int>(j));

@@ -47,6 +47,11 @@ bool is_sum_of_plain_columns(const design::Design& design, const Sides& sides) {
          }) == 3;
 }
 
+bool is_plain_difference(const design::Design& design, const Sides& sides) {
+  return is_sum_of_plain_columns(design, sides) && sides.number == 0 &&
+         sides.left.back().first > sides.right.front().first;
+}
+
 bool is_clock_by_name(const design::Design& design, const Sides& sides) {
   return is_sum_of_plain_columns(design, sides) &&
          count(design, sides, [](const design::DesignColumn& column) {

@@ -1,4 +1,5 @@
-// src/exact/clock.hpp - columns that count time.
+// src/exact/clock.hpp - three columns of which one is the sum of the others; columns that count
+// time.
 #pragma once
 
 #include <string>
@@ -14,7 +15,11 @@ namespace gramproof::exact {
 /// column, or products, are no clocks.
 [[nodiscard]] bool is_sum_of_plain_columns(const design::Design& design, const Sides& sides);
 
-/// The same, and two of the three are named for time.
+/// Such a sum, without a number, that the last of the three in the design is a part of: it can be
+/// written as what the others give (year - age = birth_year).
+[[nodiscard]] bool is_plain_difference(const design::Design& design, const Sides& sides);
+
+/// A sum of plain columns, and two of the three are named for time.
 [[nodiscard]] bool is_clock_by_name(const design::Design& design, const Sides& sides);
 
 }  // namespace gramproof::exact

@@ -50,12 +50,17 @@ void divide_by_common_factor(Sides& sides) {
   sides.number = number;
 }
 
-/// 4000000000 is 4·10^9: nobody counts that many zeros.
+/// 4000000000 is 4·10^9: nobody counts that many zeros. Nor does anybody read 100 digits: the first
+/// say how large it is, and the document has them all.
 std::string whole_text(const mpz_class& value) {
-  constexpr std::size_t readable_zeros = 6;
+  constexpr std::size_t readable_zeros = 6, readable_digits = 30, first_digits = 6;
   std::string digits = value.get_str();
   const std::size_t last = digits.find_last_not_of('0');
   const std::size_t zeros = last == std::string::npos ? 0 : digits.size() - last - 1;
+  if (digits.size() - zeros > readable_digits) {
+    return digits.substr(0, 1) + "." + digits.substr(1, first_digits - 1) + dots + times + "10^" +
+           std::to_string(digits.size() - 1);
+  }
   if (zeros <= readable_zeros) return digits;
   const std::string power = "10^" + std::to_string(zeros);
   digits.resize(last + 1);
@@ -107,7 +112,8 @@ bool names_constant(const design::Design& design, const Sides& sides) {
                      [&](const auto& term) { return !design.columns[term.first].levels.empty(); });
 }
 
-/// year - age = birth_year: of three counts of time the one written last is what the others give.
+/// year - age = birth_year: of three columns the one that is last in the design is what the others
+/// give.
 std::string difference_text(const design::Design& design, const Sides& sides) {
   return term_text(design, sides.right.front().first, 1) + " " + minus + " " +
          term_text(design, sides.left.front().first, 1) + " = " +
@@ -160,11 +166,9 @@ Sides sides_of(const design::Design& design, const NullVector& vector) {
   return sides;
 }
 
-std::string equation_of(const design::Design& design, const Sides& sides, bool clock) {
+std::string equation_of(const design::Design& design, const Sides& sides, bool as_difference) {
   if (sides.columns() == 0) return constant_label(design) + " = 0";
-  if (clock && sides.number == 0 && sides.left.back().first > sides.right.front().first) {
-    return difference_text(design, sides);
-  }
+  if (as_difference) return difference_text(design, sides);
   const bool cut = sides.columns() > long_relation;
   std::vector<std::string> left = terms_text(design, sides.left, cut);
   std::vector<std::string> right = terms_text(design, sides.right, cut);
@@ -183,7 +187,8 @@ std::string equation_of(const design::Design& design, const Sides& sides, bool c
 
 std::string equation(const design::Design& design, const NullVector& vector) {
   const Sides sides = sides_of(design, vector);
-  return equation_of(design, sides, is_clock_by_name(design, sides));
+  const bool as_difference = is_plain_difference(design, sides) && is_clock_by_name(design, sides);
+  return equation_of(design, sides, as_difference);
 }
 
 }  // namespace gramproof::exact

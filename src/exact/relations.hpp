@@ -16,7 +16,7 @@ namespace gramproof::exact {
 
 enum class Cause : std::uint8_t {
   zero_column,      ///< a column is 0 in every row
-  constant_column,  ///< a column has one value, as the constant has
+  constant_column,  ///< a column has one value, as the constant has; or two have, without one
   duplicate,        ///< two columns agree
   multiple,         ///< a whole number times the other, either way
   unit_conversion,  ///< another factor, or a factor and an offset

@@ -28,9 +28,10 @@ struct Sides {
 /// shorter. Where all columns have the same factor or stand on one side it is divided out or left.
 [[nodiscard]] Sides sides_of(const design::Design& design, const NullVector& vector);
 
-/// The equation in writing. `clock`: three counts of time, of which the one that is last in the
-/// design is written as what the others give (year - age = birth_year).
-[[nodiscard]] std::string equation_of(const design::Design& design, const Sides& sides, bool clock);
+/// The equation in writing. `as_difference`, only where is_plain_difference (clock.hpp):
+/// year - age = birth_year.
+[[nodiscard]] std::string equation_of(const design::Design& design, const Sides& sides,
+                                      bool as_difference);
 
 /// A decimal where the value is one ("0.3048"), else a fraction ("7/3"); U+2212 for minus.
 [[nodiscard]] std::string number_text(const mpq_class& value);
