@@ -10,6 +10,7 @@
 #include "command/exit_status.hpp"
 #include "command/option_table.hpp"
 #include "command/output.hpp"
+#include "command/recheck.hpp"
 #include "command/version.hpp"
 
 namespace {
@@ -25,7 +26,8 @@ int print(const std::string& text) {
 }
 
 int unknown_command(const std::string& word) {
-  const std::optional<std::string> near = nearest_name(word, {"check", "--help", "--version"});
+  const std::optional<std::string> near =
+      nearest_name(word, {"check", "recheck", "--help", "--version"});
   complain({ErrorKind::usage, "", "unknown command \"" + word + "\"",
             near ? "did you mean " + *near + "?"
                  : "gramproof check FILE... ; `gramproof --help` says more"});
@@ -41,6 +43,7 @@ int run(const std::vector<std::string>& arguments) {
   const std::string& word = arguments.front();
   if (word == "--help" || word == "help") return print(general_help());
   if (word == "--version") return print("gramproof " + std::string(program_version) + "\n");
+  if (word == "recheck") return command::recheck({arguments.begin() + 1, arguments.end()});
   if (word != "check") return unknown_command(word);
   return check({arguments.begin() + 1, arguments.end()});
 }

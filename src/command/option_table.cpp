@@ -51,6 +51,7 @@ std::string general_help() {
          "\n"
          "  gramproof check FILE... [options]    audit a design against its data\n"
          "  gramproof check --help               the options\n"
+         "  gramproof recheck VERDICT.json FILE... check the proofs in a verdict\n"
          "  gramproof --version\n"
          "\n"
          "FILE is delimited text with a header; - is standard input; .gz and .zst are\n"

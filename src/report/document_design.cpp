@@ -109,6 +109,9 @@ Json source_part(const audit::Audit& audit) {
       part.erase("filter");
     }
   }
+  // What must be present in a row to be used, so that a checker can decide it without the design's
+  // text: terms, response, --complete, weight, filter.
+  part["must_be_present"] = table_names(audit, audit.design.used_columns);
   part["rows_read"] = audit.rows_read;
   part["rows_used"] = audit.rows_used;
   part["rows_excluded"] = excluded(audit);
@@ -121,6 +124,7 @@ Json design_part(const audit::Audit& audit) {
   part["text"] = design.text;
   part["rows"] = audit.rows_used;
   part["weighted"] = design.weight >= 0;
+  part["weight"] = table_name_of(audit, design.weight);
   part["residual_degrees_of_freedom"] = audit.residual_degrees_of_freedom;
   part["columns"] = Json::array();
   for (std::size_t i = 0; i < design.columns.size(); ++i) {

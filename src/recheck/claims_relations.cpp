@@ -1,0 +1,212 @@
+// Relations, what is kept, and what is beyond this checker.
+#include <algorithm>
+#include <set>
+
+#include "base/text.hpp"
+#include "recheck/algebra.hpp"
+#include "recheck/claims.hpp"
+
+namespace gramproof::recheck {
+namespace {
+
+/// The relation from its terms; the document's own sentence is not read.
+std::string equation(const Statement& stated, const StatedRelation& relation) {
+  constexpr std::size_t most_terms = 12;
+  std::string text;
+  for (std::size_t i = 0; i < relation.terms.size() && i < most_terms; ++i) {
+    const auto& [column, coefficient] = relation.terms[i];
+    const mpz_class size = abs(coefficient);
+    text += coefficient < 0 ? (i == 0 ? "-" : " - ") : (i == 0 ? "" : " + ");
+    if (size != 1) text += size.get_str() + "*";
+    text += stated.columns[column].name;
+  }
+  if (relation.terms.size() > most_terms)
+    text += " and " + grouped(relation.terms.size() - most_terms) + " terms more";
+  return text + " = 0";
+}
+
+bool is_primitive(const StatedRelation& relation) {
+  mpz_class divisor;
+  std::set<std::size_t> columns;
+  for (const auto& [column, coefficient] : relation.terms) {
+    if (coefficient == 0 || !columns.insert(column).second) return false;
+    divisor = gcd(divisor, coefficient);
+  }
+  return divisor == 1 && relation.terms.front().second > 0;
+}
+
+void claim_violations(const StatedRelation& relation, const FoundRelation& found,
+                      const std::string& name, ClaimList& list) {
+  std::string fault = found.faults.empty() ? "" : found.faults.front();
+  std::set<std::uint64_t> rows;
+  for (std::size_t i = 0; i < relation.violations.size(); ++i) {
+    const std::string row = "row " + std::to_string(relation.violations[i].row);
+    if (fault.empty() && !found.violation_met[i]) fault = row + " is not used";
+    if (fault.empty() && !rows.insert(relation.violations[i].row).second)
+      fault = row + " is listed twice";
+  }
+  list.add_on_rows(fault.empty(),
+                   name + ": the " +
+                       counted(relation.violations.size(), "violation", "violations") +
+                       " listed, with file, line, residual and cells",
+                   fault);
+}
+
+void claim_exception(const StatedRelation& relation, const FoundRelation& found,
+                     const std::string& name, const std::string& text, ClaimList& list) {
+  list.add_on_rows(
+      relation.rows_holding == found.holding && relation.rows_violating == found.violating &&
+          found.violating > 0,
+      name + ": " + text + " in " + counted(relation.rows_holding, "row", "rows") + " and not in " +
+          grouped(relation.rows_violating),
+      "it holds in " + grouped(found.holding) + " and not in " + grouped(found.violating));
+  list.add_on_rows(relation.largest_residual == found.largest_residual,
+                   name + ": its largest residual is " + relation.largest_residual.get_str(),
+                   "it is " + found.largest_residual.get_str());
+  const bool enough = relation.violations.size() <= relation.rows_violating &&
+                      (!relation.violations.empty() || relation.rows_violating == 0);
+  list.add(enough, name + ": violations are listed, and not more than there are");
+  claim_violations(relation, found, name, list);
+}
+
+void claim_relation(const Statement& stated, const StatedRelation& relation,
+                    const FoundRelation& found, ClaimList& list) {
+  const std::string name = "relation " + std::to_string(relation.number);
+  const std::string text = equation(stated, relation);
+  if (relation.terms.empty()) return list.add(false, name + " has terms");
+  if (!found.rational) return list.not_checked(name + ": " + text + ", not rational");
+  list.add(is_primitive(relation),
+           name + ": its coefficients are whole, without common divisor, the first positive");
+  if (relation.except) return claim_exception(relation, found, name, text, list);
+  list.add_on_rows(
+      found.violating == 0 && relation.rows_holding == found.holding &&
+          relation.rows_violating == 0 && relation.violations.empty() &&
+          relation.largest_residual == 0,
+      name + ": " + text + " in all " + counted(relation.rows_holding, "row", "rows") + " used",
+      found.violating == 0
+          ? "it holds in " + grouped(found.holding)
+          : "it fails in " + grouped(found.violating) + ", first in " + found.first_violation);
+}
+
+/// Coefficients of the exact relations, one row each; `columns`: only these, in this order.
+std::vector<std::vector<mpz_class>> coefficients(const Statement& stated,
+                                                 const std::vector<std::size_t>& columns) {
+  std::vector<std::vector<mpz_class>> rows;
+  for (const StatedRelation& relation : stated.relations) {
+    if (relation.except) continue;
+    std::vector<mpz_class> all(stated.columns.size()), some;
+    for (const auto& [column, coefficient] : relation.terms) all[column] += coefficient;
+    for (const std::size_t column : columns) some.push_back(all[column]);
+    rows.push_back(std::move(some));
+  }
+  return rows;
+}
+
+std::vector<std::size_t> all_columns(const Statement& stated) {
+  std::vector<std::size_t> columns(stated.columns.size());
+  for (std::size_t i = 0; i < columns.size(); ++i) columns[i] = i;
+  return columns;
+}
+
+void claim_upper_bound(const Statement& stated, ClaimList& list) {
+  const auto rows = coefficients(stated, all_columns(stated));
+  list.add(rank_of(rows) == rows.size(),
+           "the " + counted(rows.size(), "exact relation", "exact relations") + " listed " +
+               (rows.size() == 1 ? "is" : "are") + " independent");
+  list.add(rows.size() + stated.omitted == stated.nullity,
+           counted(rows.size(), "exact relation", "exact relations") + " listed and " +
+               grouped(stated.omitted) + " omitted are the nullity",
+           "that is " + grouped(stated.nullity));
+  const std::string bound = "the rank is at most " + grouped(stated.rank);
+  if (stated.omitted > 0) {
+    list.not_checked(bound + ", since relations are omitted; those listed show at most " +
+                     grouped(stated.columns.size() - rows.size()));
+    return;
+  }
+  list.add_on_rows(rank_of(rows) + stated.rank == stated.columns.size(), bound,
+                   "the relations listed do not show it");
+}
+
+void claim_lost(const Statement& stated, ClaimList& list) {
+  const std::string claim = "coefficients lost are those of the columns in an exact relation";
+  if (stated.omitted > 0 || stated.other_relations.contains("within_rounding"))
+    return list.not_checked(claim);
+  std::set<std::string> names;
+  for (const StatedRelation& relation : stated.relations) {
+    if (relation.except) continue;
+    for (const auto& term : relation.terms) names.insert(stated.columns[term.first].name);
+  }
+  list.add(names == std::set<std::string>(stated.lost.begin(), stated.lost.end()), claim);
+}
+
+/// Places of the named columns; false where a name is unknown or comes twice.
+bool places_of(const Statement& stated, const std::vector<std::string>& names,
+               std::set<std::size_t>& places) {
+  for (const std::string& name : names) {
+    const auto found =
+        std::find_if(stated.columns.begin(), stated.columns.end(),
+                     [&](const StatedColumn& column) { return column.name == name; });
+    if (found == stated.columns.end()) return false;
+    if (!places.insert(static_cast<std::size_t>(found - stated.columns.begin())).second)
+      return false;
+  }
+  return true;
+}
+
+}  // namespace
+
+void claim_relations(const Statement& stated, const Found& found, ClaimList& list) {
+  for (std::size_t i = 0; i < stated.relations.size(); ++i)
+    claim_relation(stated, stated.relations[i], found.relations[i], list);
+  claim_upper_bound(stated, list);
+}
+
+void claim_choice(const Statement& stated, ClaimList& list) {
+  std::set<std::size_t> both;
+  const bool parts = places_of(stated, stated.kept, both) &&
+                     places_of(stated, stated.left_out, both) &&
+                     both.size() == stated.columns.size();
+  list.add(parts && stated.kept.size() == stated.rank && stated.left_out.size() == stated.nullity,
+           counted(stated.kept.size(), "column", "columns") + " kept and " +
+               grouped(stated.left_out.size()) +
+               " left out are the design, and as many as the "
+               "rank and the nullity");
+  std::set<std::size_t> left_out;
+  places_of(stated, stated.left_out, left_out);
+  const std::string claim = "the columns kept are independent and give each column left out";
+  if (stated.omitted > 0) {
+    list.not_checked(claim + ", since relations are omitted");
+  } else {
+    // With a basis N of the null space, the other columns are a basis of the column space if and
+    // only if N restricted to those left out is invertible.
+    const auto square = coefficients(stated, {left_out.begin(), left_out.end()});
+    list.add_on_rows(parts && square.size() == left_out.size() && rank_of(square) == square.size(),
+                     claim);
+  }
+  claim_lost(stated, list);
+  const bool fails = stated.identified == "fail", singular = stated.overall == "singular";
+  list.add(fails == (stated.nullity > 0) && singular == fails,
+           std::string("the design is ") + (singular ? "" : "not ") +
+               "singular, and the grade of `identified` is " + stated.identified);
+}
+
+void say_what_was_not_checked(const Statement& stated, ClaimList& list) {
+  for (const auto& [standing, count] : stated.other_relations)
+    list.not_checked(counted(count, "relation", "relations") + " of standing " + standing +
+                     ": approximate, or resting on intervals");
+  std::string names;
+  for (const StatedColumn& column : stated.columns) {
+    if (!column.rational()) names += (names.empty() ? "" : ", ") + column.name;
+  }
+  if (!names.empty())
+    list.not_checked("values of columns with log, sqrt, exp or asinh, or without definition: " +
+                     names);
+  if (stated.further_ranks)
+    list.not_checked("the rank within rounding and the rank of the doubles");
+  list.not_checked(counted(stated.figures, "figure", "figures") +
+                   " in floating point, and every grade, sentence and cause that rests on them");
+  list.not_checked(
+      "definitions, the row filter and the columns that must be present: taken as given");
+}
+
+}  // namespace gramproof::recheck
