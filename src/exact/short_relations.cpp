@@ -3,6 +3,7 @@
 #include <algorithm>
 #include <optional>
 #include <set>
+#include <utility>
 
 #include "exact/flint_types.hpp"
 #include "exact/modular.hpp"
@@ -19,6 +20,8 @@ constexpr std::size_t budget = 20'000'000;
 /// A relation of 7 among 45 columns of a null space of dimension 8 comes out of an order with
 /// probability 0.3: hardly any is missed in so many.
 constexpr std::size_t most_orders = 400;
+/// Where so many in succession bring nothing new, there is nothing to be found.
+constexpr std::size_t idle_orders = 60;
 
 std::vector<std::size_t> shuffled(std::vector<std::size_t> columns, std::size_t order) {
   std::vector<std::pair<std::uint64_t, std::size_t>> keys;
@@ -41,19 +44,18 @@ void reduce(const std::vector<std::vector<std::uint64_t>>& basis,
 std::optional<NullVector> lifted(const NullSpace& space, const Modulus& field,
                                  const ResidueMatrix& matrix, std::size_t row,
                                  const std::vector<std::size_t>& order) {
-  const std::size_t width = space.basis().front().size();
-  std::vector<mpq_class> fractions(width, 0);
+  std::vector<std::pair<std::size_t, mpq_class>> fractions;
   Integer multiple = 1;
   for (std::size_t c = 0; c < order.size(); ++c) {
     const std::uint64_t residue = matrix.at(row, c);
     if (residue == 0) continue;
-    const auto fraction = small_fraction(residue, field);
+    auto fraction = small_fraction(residue, field);
     if (!fraction) return std::nullopt;
-    fractions[order[c]] = *fraction;
     multiple = lcm(multiple, fraction->get_den());
+    fractions.emplace_back(order[c], std::move(*fraction));
   }
-  NullVector vector(width, 0);
-  for (const std::size_t j : order) vector[j] = Integer(fractions[j] * multiple);
+  NullVector vector(space.basis().front().size(), 0);
+  for (const auto& [column, fraction] : fractions) vector[column] = Integer(fraction * multiple);
   make_primitive(vector);
   if (!space.contains(vector)) return std::nullopt;
   return vector;
@@ -77,6 +79,7 @@ std::vector<NullVector> short_relations(const NullSpace& space, std::size_t most
   const Modulus field(prime);
   const std::vector<std::size_t>& columns = space.involved();
   const std::size_t nullity = space.basis().size();
+  if (nullity < 2) return {};
   const std::size_t orders =
       std::min(most_orders, budget / std::max<std::size_t>(1, nullity * nullity * columns.size()));
   std::vector<std::vector<std::uint64_t>> basis;
@@ -87,14 +90,16 @@ std::vector<NullVector> short_relations(const NullSpace& space, std::size_t most
   ResidueMatrix matrix(nullity, columns.size(), prime);
   std::set<Support> seen;
   std::vector<NullVector> found;
-  for (std::size_t o = 0; o < orders; ++o) {
+  for (std::size_t o = 0, idle = 0; o < orders && idle < idle_orders; ++o, ++idle) {
     const std::vector<std::size_t> order = shuffled(columns, o);
     reduce(basis, order, matrix);
     for (std::size_t row = 0; row < nullity; ++row) {
       auto support = support_of(matrix, row, order, most_columns);
       if (!support || support->empty() || !seen.insert(std::move(*support)).second) continue;
       auto vector = lifted(space, field, matrix, row, order);
-      if (vector) found.push_back(std::move(*vector));
+      if (!vector) continue;
+      found.push_back(std::move(*vector));
+      idle = 0;
     }
   }
   return found;

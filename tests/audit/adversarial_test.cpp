@@ -129,6 +129,37 @@ TEST_CASE("hard designs: rank, null space and standing are right without any opt
   }
 }
 
+TEST_CASE("Filip and Hilbert: full rank is proved; with a column replaced the relation is told") {
+  struct Case {
+    std::string name, relation;
+  };
+  const std::vector<Case> cases = {
+      {"Filip's polynomial of degree 10 (NIST), as recorded", ""},
+      {"Filip with one power replaced by a combination",
+       "x + 4\u00b7x^6 = 12\u00b7x^2 + 4\u00b7x^7"},
+      {"12 x 12 Hilbert in decimals", ""},
+      {"Hilbert with a column replaced by a combination", "2\u00b7x2 + x12 = 5\u00b7x5 + x9"},
+  };
+  const std::vector<AdversarialCase> all = all_cases();
+  for (const Case& c : cases) {
+    CAPTURE(c.name);
+    const auto found = std::find_if(
+        all.begin(), all.end(), [&](const AdversarialCase& hard) { return hard.name == c.name; });
+    REQUIRE(found != all.end());
+    AdversarialCase hard = *found;
+    if (hard.design.empty()) {
+      // Filip's file has its own constant.
+      hard.design = "rest";
+      for (auto& row : hard.rows) row.erase(row.begin());
+    }
+    const Audit audit = audited(hard);
+    check_exact(hard, audit);
+    CHECK(audit.rank.nullity == (c.relation.empty() ? 0 : 1));
+    REQUIRE(listed(audit, Standing::exact).size() == audit.rank.nullity);
+    if (!c.relation.empty()) CHECK(audit.relations.front().text == c.relation);
+  }
+}
+
 TEST_CASE("the hard designs are written out where a folder is named for them") {
   const char* folder = std::getenv("GRAMPROOF_CASES");
   if (folder == nullptr) return;
