@@ -133,6 +133,26 @@ bool is_clock(const Evidence& e) {
          2;
 }
 
+/// Age, period and birth as sets of levels, or some of them: the coefficients are the years.
+bool is_clock_of_levels(const Evidence& e) {
+  std::set<int> sources;
+  bool levels = false;
+  for (const Terms* side : {&e.sides.left, &e.sides.right}) {
+    for (const auto& term : *side) {
+      const design::DesignColumn& column = column_of(e, term);
+      if (column.sources.size() != 1 || column.levels.size() > 1) return false;
+      const bool plain = column.definition->operation == design::Operation::cell;
+      if (column.levels.empty() && !plain) return false;
+      levels = levels || !plain;
+      sources.insert(column.sources.front());
+    }
+  }
+  return levels && sources.size() == 3 &&
+         std::count_if(sources.begin(), sources.end(), [&](int source) {
+           return named_for_time(e.schema.columns[static_cast<std::size_t>(source)].name);
+         }) >= 2;
+}
+
 std::optional<Cause> cause_of_one(const Evidence& e) {
   const Sides& s = e.sides;
   if (s.columns() != 1) return std::nullopt;
@@ -187,7 +207,7 @@ Cause cause_of(const Evidence& e) {
   if (e.rows < e.sides.columns() + (e.sides.has_constant ? 1 : 0)) return Cause::too_few_rows;
   if (is_overlap(e)) return Cause::level_set;
   if (const auto cause = cause_of_two(e)) return *cause;
-  if (is_clock(e)) return Cause::clock_identity;
+  if (is_clock(e) || is_clock_of_levels(e)) return Cause::clock_identity;
   if (is_total(e)) return Cause::parts_and_total;
   const bool one_side = e.sides.right.empty() && e.sides.number != 0;
   if (one_side && all_ones(e.sides.left)) return Cause::fixed_sum;

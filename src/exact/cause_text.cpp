@@ -2,6 +2,7 @@
 #include <algorithm>
 #include <array>
 #include <utility>
+#include <vector>
 
 #include "base/text.hpp"
 #include "exact/cause.hpp"
@@ -194,9 +195,16 @@ std::string of_too_few(const Evidence& e) {
 }
 
 std::string of_clock(const Evidence& e) {
-  Terms all = e.sides.left;
-  all.insert(all.end(), e.sides.right.begin(), e.sides.right.end());
-  return "Time is counted three ways, in " + listed(e, all) + ": any two of them give the third.";
+  std::vector<std::string> names;
+  for (const Terms* side : {&e.sides.left, &e.sides.right}) {
+    for (const auto& term : *side) {
+      const int source = e.design.columns[term.first].sources.front();
+      const std::string& name = e.schema.columns[static_cast<std::size_t>(source)].name;
+      if (std::find(names.begin(), names.end(), name) == names.end()) names.push_back(name);
+    }
+  }
+  return "Time is counted three ways, in " + names[0] + ", " + names[1] + " and " + names[2] +
+         ": any two of them give the third.";
 }
 
 std::string of_other(const Evidence& e) {

@@ -235,6 +235,34 @@ TEST_CASE("levels: a full set, two of them, one inside another") {
   CHECK(has(relations, "[region = east] + [region = west] = [zone = b]", Cause::nested_levels));
 }
 
+TEST_CASE("age, period and birth as levels are told as a clock") {
+  std::vector<int> ages, years, births;
+  std::vector<Texts> cells;
+  for (int age = 0; age < 4; ++age) {
+    for (int year = 0; year < 4; ++year) {
+      cells.push_back({"1"});
+      ages.push_back(age);
+      years.push_back(year);
+      births.push_back(year - age + 3);
+    }
+  }
+  Matrix matrix = test::matrix_of({"constant"}, cells);
+  const Texts four = {"0", "1", "2", "3"};
+  add_text_column(matrix, "age", ages, four);
+  add_text_column(matrix, "year", years, four);
+  add_text_column(matrix, "birth", births, {"0", "1", "2", "3", "4", "5", "6"});
+  for (const std::string name : {"age", "year", "birth"}) add_all_levels(matrix, name);
+  const auto relations = relations_of(matrix);
+  CAPTURE(all_texts(relations));
+  REQUIRE(relations.size() == 4);
+  const auto clock = std::find_if(relations.begin(), relations.end(), [](const auto& relation) {
+    return relation.cause == Cause::clock_identity;
+  });
+  REQUIRE(clock != relations.end());
+  CHECK(clock->cause_text.find("Time is counted three ways, in ") == 0);
+  CHECK(clock->cause_text.find(": any two of them give the third.") != std::string::npos);
+}
+
 TEST_CASE("two full sets without a constant add up to each other") {
   Matrix matrix = regions();
   matrix.design.columns.clear();
