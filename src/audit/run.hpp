@@ -32,6 +32,8 @@ struct Request {
   OptionRecord options;                             ///< what was asked, for the document
   /// Which pass runs (named for a person) and how far it is; may be empty.
   std::function<void(const std::string& pass, const table::Progress&)> on_progress;
+  /// Sees what the scan left behind, for questions that go on from it; may be empty.
+  std::function<void(const design::Settled&, const scan::Digest&)> on_scanned;
 };
 
 /// Audits one design on an open source. Passes: the survey, the fold, and one for each round of
