@@ -63,8 +63,9 @@ struct Rank {
   std::uint64_t rank = 0;
   std::uint64_t columns = 0;
   std::uint64_t nullity = 0;
-  bool proved =
-      true;  ///< false when columns hold log, sqrt, exp or asinh: these count as independent
+  bool proved = true;  ///< false where a relation holds within rounding, or columns are unsettled
+  std::vector<int> unsettled;   ///< columns with log, sqrt, exp or asinh that count as independent
+                                ///< without a proof
   std::uint64_t numerical = 0;  ///< rank less the relations that hold within rounding
   std::optional<std::uint64_t> rank_of_the_doubles;  ///< exact rank of X rounded to doubles
   std::optional<Certificate> certificate;
@@ -95,6 +96,7 @@ struct RelationFinding {
   Standing standing = Standing::exact;
   std::string text;
   std::vector<RelationTerm> terms;
+  std::vector<double> errors;  ///< near: standard errors of the coefficients, 0 for the explained
   std::uint64_t rows_holding = 0, rows_violating = 0;
   std::vector<Violation> violations;  ///< at most 50
   std::string largest_residual;       ///< exact standings; "0" when it holds everywhere

@@ -30,6 +30,10 @@ class EveryRow {
 
   [[nodiscard]] Result<std::vector<scan::Examined>> ask(const scan::Examiner& examiner);
 
+  /// Of the sample alone.
+  [[nodiscard]] Result<std::vector<scan::Examined>> ask_sample(
+      const scan::Examiner& examiner) const;
+
   /// The sample's design rows in doubles, as the fold has seen them.
   [[nodiscard]] Result<Matrix> sample_values() const;
   [[nodiscard]] const table::Piece& sample() const { return digest_.sample; }

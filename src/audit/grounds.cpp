@@ -11,19 +11,27 @@ namespace {
 
 const Thresholds thresholds;
 
-std::vector<std::string> labels(const Audit& audit, const std::vector<int>& columns) {
+std::vector<std::string> named(const Audit& audit, const std::vector<int>& columns) {
   std::vector<std::string> names;
   for (const int column : columns)
     names.push_back(audit.design.columns[static_cast<std::size_t>(column)].label);
   return names;
 }
 
-std::vector<std::string> unproved_columns(const Audit& audit) {
+std::vector<std::string> inexact_columns(const Audit& audit) {
   std::vector<std::string> names;
   for (const design::DesignColumn& column : audit.design.columns) {
     if (!column.exact) names.push_back(column.label);
   }
   return names;
+}
+
+std::vector<const RelationFinding*> within_rounding(const Audit& audit) {
+  std::vector<const RelationFinding*> found;
+  for (const RelationFinding& relation : audit.relations) {
+    if (relation.standing == Standing::within_rounding) found.push_back(&relation);
+  }
+  return found;
 }
 
 /// "below sqrt(2)" and its like: value against limits, worst first.
@@ -59,7 +67,7 @@ std::string ratio_sentence(const Audit& audit, const std::vector<NoisyDirection>
   std::string text;
   for (std::size_t i = 0; i < close.size() && i < most; ++i) {
     text += fmt::format("{}{}: {} times", i == 0 ? "" : "; ",
-                        names_in_words(labels(audit, close[i].columns)), figure(close[i].ratio));
+                        names_in_words(named(audit, close[i].columns)), figure(close[i].ratio));
   }
   if (close.size() > most) text += fmt::format("; and {} more", close.size() - most);
   return fmt::format(
@@ -103,19 +111,33 @@ Ground identified_ground(const Audit& audit) {
     return {Grade::fail, finding + "."};
   }
   if (audit.rank.proved) {
+    const std::vector<std::string> inexact = inexact_columns(audit);
     return {
         Grade::pass,
-        fmt::format("{} linearly independent on the {} rows used: proved in exact arithmetic, no "
+        fmt::format("{} linearly independent on the {} rows used: proved in exact arithmetic{}, no "
                     "tolerance decides it.",
                     audit.rank.columns == 1 ? "The only column is"
                                             : "All " + grouped(audit.rank.columns) + " columns are",
-                    grouped(audit.rows_used))};
+                    grouped(audit.rows_used),
+                    inexact.empty() ? ""
+                                    : ", for " + names_in_words(inexact, 3) +
+                                          " with every rounding error enclosed")};
   }
-  return {Grade::pass,
-          fmt::format("No exact relation holds among the columns in plain decimals on the {} rows "
-                      "used; {} count as "
-                      "independent of the others, which is not proved.",
-                      grouped(audit.rows_used), names_in_words(unproved_columns(audit)))};
+  const std::vector<const RelationFinding*> within = within_rounding(audit);
+  if (!within.empty()) {
+    return {
+        Grade::caution,
+        fmt::format("No exact relation is proved on the {} rows used, but {}{} holds to 60 "
+                    "digits in every one of them. Values of log, sqrt, exp and asinh can be "
+                    "computed as closely as one likes, but no computing proves them equal.",
+                    grouped(audit.rows_used), within.front()->text,
+                    within.size() == 1 ? "" : fmt::format(" (and {} more)", within.size() - 1))};
+  }
+  return {
+      Grade::pass,
+      fmt::format("No exact relation holds among the columns in plain decimals on the {} rows "
+                  "used; {} count as independent of the others, which is not proved.",
+                  grouped(audit.rows_used), names_in_words(named(audit, audit.rank.unsettled)))};
 }
 
 Ground computable_ground(const Audit& audit) {
@@ -142,10 +164,39 @@ Ground computable_ground(const Audit& audit) {
   return {grade, std::move(finding)};
 }
 
+Ground computable_as_written(const Audit& audit, const Ground& on_kept) {
+  const std::vector<const RelationFinding*> within = within_rounding(audit);
+  if (within.empty()) return on_kept;
+  return {Grade::fail,
+          fmt::format("In doubles {} is off by rounding alone, so that the inverse of X'X would be "
+                      "made of rounding errors. Without {}: {}",
+                      within.front()->text, names_in_words(named(audit, audit.left_out), 3),
+                      on_kept.finding)};
+}
+
+/// Relations that no row tells from an exact one, given how the numbers were recorded.
+std::string within_recorded_sentence(const Audit& audit) {
+  const RelationFinding* first = nullptr;
+  std::size_t count = 0;
+  for (const RelationFinding& relation : audit.relations) {
+    if (relation.standing != Standing::within_recorded_precision) continue;
+    if (first == nullptr) first = &relation;
+    ++count;
+  }
+  if (first == nullptr) return "";
+  return fmt::format(
+      "{}{} in every one of the {} rows used, to within the rounding of the recorded "
+      "numbers: no row tells it from an exact relation. ",
+      first->text, count == 1 ? "" : fmt::format(" (and {} more)", count - 1),
+      grouped(audit.rows_used));
+}
+
 Ground recorded_ground(const Audit& audit) {
   const Recording& recording = audit.recording;
   const RatioReading exact = read_ratios(recording.distance_ratios);
   const RatioReading rounded = read_ratios(recording.distance_ratios_whole_rounded);
+  const std::string within = within_recorded_sentence(audit);
+  if (!within.empty()) return {Grade::fail, within + ratio_sentence(audit, recording.close)};
   if (exact.grade != Grade::pass) return {exact.grade, ratio_sentence(audit, recording.close)};
   if (rounded.any && rounded.grade != Grade::pass) {
     return {Grade::caution, ratio_sentence(audit, recording.close_whole_rounded) +

@@ -121,7 +121,7 @@ void fill_identification(Identification found, Audit& audit) {
     }
   }
   audit.residual_degrees_of_freedom =
-      static_cast<std::int64_t>(audit.rows_used) - static_cast<std::int64_t>(audit.rank.rank);
+      static_cast<std::int64_t>(audit.rows_used) - static_cast<std::int64_t>(audit.rank.numerical);
 }
 
 void fill_figures(const scan::Digest& digest, const std::vector<int>& constant_support,
@@ -148,7 +148,32 @@ void fill_figures(const scan::Digest& digest, const std::vector<int>& constant_s
   }
 }
 
-/// Estimable: orthogonal to every exact relation (Silvey 1969), decided in integers.
+/// The first relation within rounding that the contrast is not orthogonal to: in exact arithmetic
+/// where its coefficients are whole numbers, else by the doubles nearest to them, whose products
+/// cancel to 1e-15 where they cancel, and are told from what does not.
+const RelationFinding* blocking_within_rounding(const std::vector<design::ContrastPart>& parts,
+                                                const Audit& audit) {
+  for (const RelationFinding& relation : audit.relations) {
+    if (relation.standing != Standing::within_rounding) continue;
+    mpq_class sum = 0, size = 0;
+    for (const RelationTerm& term : relation.terms) {
+      for (const design::ContrastPart& part : parts) {
+        if (part.column != term.column) continue;
+        const mpq_class coefficient =
+            term.exact.empty() ? mpq_class(term.coefficient) : mpq_class(term.exact);
+        const mpq_class product = design::exact_number(part.number) * coefficient;
+        sum += product;
+        size += abs(product);
+      }
+    }
+    const bool exact = !relation.terms.front().exact.empty();
+    if (exact ? sum != 0 : std::abs(sum.get_d()) > 1e-12 * size.get_d()) return &relation;
+  }
+  return nullptr;
+}
+
+/// Estimable: orthogonal to every exact relation (Silvey 1969), decided in integers, and to those
+/// within rounding.
 ContrastFinding contrast_finding(const std::string& text,
                                  const std::vector<design::ContrastPart>& parts,
                                  const scan::Digest& digest, const Audit& audit) {
@@ -164,6 +189,11 @@ ContrastFinding contrast_finding(const std::string& text,
     if (product == 0) continue;
     finding.estimable = false;
     finding.blocking_relation = exact::equation(audit.design, relation);
+    return finding;
+  }
+  if (const RelationFinding* relation = blocking_within_rounding(parts, audit)) {
+    finding.estimable = false;
+    finding.blocking_relation = relation->text;
     return finding;
   }
   Vector coefficients = Vector::Zero(static_cast<Index>(audit.kept.size()));
@@ -200,6 +230,16 @@ void add_notes(double chance_of_a_miss, Audit& audit) {
                                        "would be missed with a probability of {}.",
                                        figure(chance_of_a_miss)),
                            {}});
+  }
+  if (!audit.rank.unsettled.empty()) {
+    std::vector<std::string> names;
+    for (const int column : audit.rank.unsettled)
+      names.push_back(audit.design.columns[static_cast<std::size_t>(column)].label);
+    audit.notes.push_back({"rank_unsettled",
+                           "Whether columns with log, sqrt, exp or asinh are independent of the "
+                           "others could not be settled within the budget of a few seconds (about "
+                           "150 columns where the columns are nearly dependent).",
+                           std::move(names)});
   }
   if (audit.centred_by == CentredBy::none) {
     audit.notes.insert(audit.notes.begin(), {"no_constant",

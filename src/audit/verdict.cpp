@@ -50,12 +50,26 @@ std::string singular_summary(const Audit& audit, Overall after, const std::vecto
                      fate_of_coefficients(audit, lost));
 }
 
+/// Not proved singular, but to 60 digits.
+std::string rounding_summary(const Audit& audit, Overall after, const std::vector<int>& lost) {
+  return fmt::format(
+      "Unreliable as written: to 60 digits {} {} by the others, which no computing "
+      "can prove; {} without {}; {}.",
+      names_in_words(labels(audit, audit.left_out), 6),
+      audit.left_out.size() == 1 ? "is determined" : "are determined", word_of(after),
+      audit.left_out.size() == 1 ? "it" : "them", fate_of_coefficients(audit, lost));
+}
+
 std::string summary_of(const Audit& audit, const Verdict& verdict) {
   const Grounds& grounds = verdict.grounds;
   switch (verdict.overall) {
     case Overall::singular:
       return singular_summary(audit, verdict.after_leaving_out->overall, verdict.coefficients_lost);
     case Overall::unreliable: {
+      if (verdict.after_leaving_out) {
+        return rounding_summary(audit, verdict.after_leaving_out->overall,
+                                verdict.coefficients_lost);
+      }
       std::string why;
       if (grounds.computable.grade == Grade::fail)
         why = "too few digits survive the inversion of X'X";
@@ -79,24 +93,40 @@ std::string summary_of(const Audit& audit, const Verdict& verdict) {
   return "Sound: X'X can be inverted reliably and " + who + " keeps usable information of its own.";
 }
 
+Ground identified_on_kept(const Audit& audit) {
+  const std::string kept = counted(audit.kept.size(), "column", "columns");
+  if (!audit.rank.unsettled.empty()) {
+    return {Grade::pass,
+            fmt::format("No relation is known among the {} kept; {} count as independent, which is "
+                        "not proved.",
+                        kept, names_in_words(labels(audit, audit.rank.unsettled)))};
+  }
+  return {Grade::pass,
+          fmt::format("The {} kept are linearly independent: proved in exact arithmetic.", kept)};
+}
+
 }  // namespace
 
 Verdict verdict_of(const Audit& audit, const std::vector<int>& coefficients_lost) {
   Verdict verdict;
   verdict.grounds = {identified_ground(audit), computable_ground(audit), recorded_ground(audit),
                      informative_ground(audit)};
-  verdict.overall = overall_of(verdict.grounds);
   verdict.coefficients_lost = coefficients_lost;
-  if (verdict.overall == Overall::singular) {
+  const bool singular = verdict.grounds.identified.grade == Grade::fail;
+  const bool within_rounding = std::any_of(audit.relations.begin(), audit.relations.end(),
+                                           [](const RelationFinding& relation) {
+                                             return relation.standing == Standing::within_rounding;
+                                           });
+  if (singular || within_rounding) {
     VerdictOnKept after;
     after.grounds = verdict.grounds;
-    after.grounds.identified = {
-        Grade::pass,
-        fmt::format("The {} kept are linearly independent: proved in exact arithmetic.",
-                    counted(audit.rank.rank, "column", "columns"))};
+    after.grounds.identified = identified_on_kept(audit);
     after.overall = overall_of(after.grounds);
     verdict.after_leaving_out = std::move(after);
   }
+  if (!singular)
+    verdict.grounds.computable = computable_as_written(audit, verdict.grounds.computable);
+  verdict.overall = overall_of(verdict.grounds);
   verdict.summary = summary_of(audit, verdict);
   return verdict;
 }

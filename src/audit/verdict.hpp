@@ -23,11 +23,15 @@ struct Thresholds {
 };
 
 /// Everything but Audit::verdict must be filled. Grounds other than `identified` are those of the
-/// kept columns.
+/// kept columns; but where nothing worse than a relation within rounding stands against the design,
+/// `computable` is that of the design as written, and fails.
 [[nodiscard]] Verdict verdict_of(const Audit& audit, const std::vector<int>& coefficients_lost);
 
 [[nodiscard]] Ground identified_ground(const Audit& audit);
 [[nodiscard]] Ground computable_ground(const Audit& audit);
+/// A relation within rounding makes the design as written fail; `on_kept` is the ground without the
+/// columns left out.
+[[nodiscard]] Ground computable_as_written(const Audit& audit, const Ground& on_kept);
 [[nodiscard]] Ground recorded_ground(const Audit& audit);
 [[nodiscard]] Ground informative_ground(const Audit& audit);
 

@@ -47,7 +47,8 @@ Json relation_part(const audit::Audit& audit, const RelationFinding& relation) {
   part["text"] = relation.text;
   part["terms"] = Json::array();
   for (const audit::RelationTerm& term : relation.terms) {
-    Json coefficient = near ? finite_or_null(term.coefficient) : Json(term.exact);
+    // Whole numbers are exact; what is no simple fraction (log 100, say) is a number.
+    Json coefficient = term.exact.empty() ? finite_or_null(term.coefficient) : Json(term.exact);
     part["terms"].push_back(
         {{"column", label_of(audit, term.column)}, {"coefficient", std::move(coefficient)}});
   }

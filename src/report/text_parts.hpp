@@ -47,7 +47,8 @@ void write_verdict(const audit::Audit& audit, Page& page);                    //
 void write_grounds(const audit::Audit& audit, Page& page);                    // text_verdict.cpp
 void write_exact_relations(const audit::Audit& audit, Page& page);            // text_relations.cpp
 void write_left_out(const audit::Audit& audit, Page& page);                   // text_relations.cpp
-void write_rounding(const audit::Audit& audit, Page& page);                   // text_rounding.cpp
+void write_relations_within_rounding(const audit::Audit& audit, Page& page);  // text_rounding.cpp
+void write_doubles(const audit::Audit& audit, Page& page);                    // text_rounding.cpp
 void write_relations_with_exceptions(const audit::Audit& audit, Page& page);  // text_relations.cpp
 void write_competing(const audit::Audit& audit, Page& page);                  // text_competing.cpp
 void write_digits(const audit::Audit& audit, Page& page);                     // text_competing.cpp

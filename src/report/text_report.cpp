@@ -62,8 +62,9 @@ std::string text_report(const audit::Audit& audit, const TextOptions& options) {
   write_verdict(audit, page);
   write_grounds(audit, page);
   write_exact_relations(audit, page);
+  write_relations_within_rounding(audit, page);
   write_left_out(audit, page);
-  write_rounding(audit, page);
+  write_doubles(audit, page);
   write_relations_with_exceptions(audit, page);
   write_rare_levels(audit, page);
   write_competing(audit, page);

@@ -1,13 +1,17 @@
 // What rounding hides: relations that cannot be proved, and X held as doubles.
 #include <fmt/format.h>
 
+#include <algorithm>
 #include <string>
+#include <vector>
 
 #include "base/text.hpp"
 #include "report/text_parts.hpp"
 
 namespace gramproof::report {
 namespace {
+
+using audit::RelationFinding;
 
 std::string doubles_sentence(const audit::Audit& audit) {
   const audit::Rank& rank = audit.rank;
@@ -27,9 +31,50 @@ std::string doubles_sentence(const audit::Audit& audit) {
          "decide by a tolerance, and may keep or drop a column as its tolerance has it.";
 }
 
+std::string removable_sentence(const audit::Audit& audit, const RelationFinding& relation) {
+  if (relation.removable.empty()) return "";
+  return fmt::format("To end it, leave out one of: {}.", names_of(audit, relation.removable));
+}
+
 }  // namespace
 
-void write_rounding(const audit::Audit& audit, Page& page) {
+void write_relations_within_rounding(const audit::Audit& audit, Page& page) {
+  std::vector<const RelationFinding*> relations;
+  for (const RelationFinding& relation : audit.relations) {
+    if (relation.standing == audit::Standing::within_rounding) relations.push_back(&relation);
+  }
+  if (relations.empty()) return;
+  page.heading(relations.size() == 1 ? "A relation that holds to 60 digits"
+                                     : "Relations that hold to 60 digits");
+  page.paragraph(
+      "Values of log, sqrt, exp and asinh are no fractions: they were computed from the decimals "
+      "in the file between proved bounds. What follows holds to more than 60 digits in every row, "
+      "so that in all likelihood it is true and X'X singular; but it is not proved, and is not "
+      "counted in the rank.",
+      2);
+  const std::size_t told = std::min(relations.size(), most_relations_told);
+  for (std::size_t i = 0; i < told; ++i) {
+    const RelationFinding& relation = *relations[i];
+    page.blank();
+    page.cut(fmt::format("{}. {}", i + 1, relation.text), most_lines_of_an_equation,
+             fmt::format("... ({} in all)", counted(relation.terms.size(), "column", "columns")), 2,
+             3);
+    page.paragraph(fmt::format("On all {} the two sides differ by less than {}. {}",
+                               counted(relation.rows_holding, "row", "rows"),
+                               relation.largest_residual, relation.cause_text),
+                   5);
+    page.paragraph(removable_sentence(audit, relation), 5);
+  }
+  if (relations.size() == told) return;
+  page.blank();
+  page.paragraph(
+      fmt::format("{} not shown here; the JSON document lists {}.",
+                  counted_are(relations.size() - told, "further relation", "further relations"),
+                  relations.size() - told == 1 ? "it" : "them"),
+      2);
+}
+
+void write_doubles(const audit::Audit& audit, Page& page) {
   const std::string doubles = doubles_sentence(audit);
   if (doubles.empty()) return;
   page.heading("What a program that holds doubles makes of it");

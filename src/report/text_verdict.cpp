@@ -1,3 +1,6 @@
+#include <algorithm>
+#include <string>
+
 #include <fmt/format.h>
 
 #include "base/text.hpp"
@@ -31,19 +34,34 @@ Tone tone_of(Grade grade) {
   }
 }
 
+/// How far the rank is known, to follow its number.
+std::string how_proved(const audit::Audit& audit) {
+  const audit::Rank& rank = audit.rank;
+  if (!rank.unsettled.empty()) {
+    return fmt::format(". {} {} counted as independent of the others; that is not proved.",
+                       names_of(audit, rank.unsettled, 3),
+                       rank.unsettled.size() == 1 ? "is" : "are");
+  }
+  if (rank.numerical < rank.rank) {
+    return fmt::format(" if only what is proved counts, and {} to 60 digits.",
+                       grouped(rank.numerical));
+  }
+  const bool all_exact =
+      std::all_of(audit.design.columns.begin(), audit.design.columns.end(),
+                  [](const design::DesignColumn& column) { return column.exact; });
+  return std::string(", counted exactly from the decimals in the file, not judged by a tolerance") +
+         (all_exact ? "." : "; log, sqrt, exp and asinh are enclosed between proved bounds.");
+}
+
 std::string rank_sentence(const audit::Audit& audit) {
   const audit::Rank& rank = audit.rank;
   const std::string size = fmt::format("X, the table of numbers this design makes, has {} and {}.",
                                        counted(audit.rows_used, "row", "rows"),
                                        counted(rank.columns, "column", "columns"));
-  const char* how =
-      rank.proved
-          ? ", counted exactly from the decimals in the file, not judged by a tolerance."
-          : ". Columns with log, sqrt, exp or asinh are counted as independent of the others; "
-            "that is not proved.";
+  const std::string how = how_proved(audit);
   if (rank.nullity == 0) {
     return fmt::format("{} No column is {}a combination of others: the rank is {}{}", size,
-                       rank.proved ? "" : "known to be ", grouped(rank.rank), how);
+                       rank.proved ? "" : "proved to be ", grouped(rank.rank), how);
   }
   return fmt::format("{} Only {} of the columns are independent: the rank is {}{}", size,
                      grouped(rank.rank), grouped(rank.rank), how);

@@ -14,7 +14,7 @@ inline audit::Audit plain_audit() {
   audit::Audit audit;
   audit.rows_read = audit.rows_used = 1'000;
   audit.residual_degrees_of_freedom = 997;
-  audit.rank.rank = audit.rank.columns = 3;
+  audit.rank.rank = audit.rank.columns = audit.rank.numerical = 3;
   const std::vector<std::string> labels = {"constant", "a", "b"};
   for (std::size_t j = 0; j < labels.size(); ++j) {
     design::DesignColumn column;

@@ -105,7 +105,14 @@ def size_faults(document):
             continue
         if len(relation["violations"]) != min(relation["rows_violating"], 50):
             yield f"{relation['text']}: {len(relation['violations'])} of {relation['rows_violating']} violations"
-        numbers = [int(term["coefficient"]) for term in relation["terms"]]
+        coefficients = [term["coefficient"] for term in relation["terms"]]
+        texts = sum(isinstance(coefficient, str) for coefficient in coefficients)
+        if texts == 0 and relation["standing"].startswith("within_"):
+            continue
+        if texts != len(coefficients):
+            yield f"{relation['text']}: whole numbers beside others"
+            continue
+        numbers = [int(coefficient) for coefficient in coefficients]
         if numbers[0] <= 0 or math.gcd(*numbers) != 1:
             yield f"{relation['text']}: coefficients are not primitive with a positive first one"
 
