@@ -181,9 +181,11 @@ std::optional<Cause> cause_of_two(const Evidence& e) {
   return a == 1 || b == 1 ? Cause::multiple : Cause::unit_conversion;
 }
 
-/// Of three columns that may be negative any one is as much a difference as another is a sum.
+/// Of three columns that may be negative any one is as much a difference as another is a sum. What
+/// is made of the same table columns by arithmetic is no total of parts.
 bool is_total(const Evidence& e) {
   const Sides& s = e.sides;
+  if (sources_of(e).size() < s.columns()) return false;
   if (s.number != 0 || s.right.size() != 1 || !all_ones(s.right) || !all_ones(s.left)) return false;
   return s.left.size() > 2 ||
          (s.left.size() == 2 && std::all_of(s.left.begin(), s.left.end(), [&](const auto& term) {
@@ -192,6 +194,17 @@ bool is_total(const Evidence& e) {
 }
 
 }  // namespace
+
+std::set<int> sources_of(const Evidence& e) {
+  std::set<int> sources;
+  for (const Terms* side : {&e.sides.left, &e.sides.right}) {
+    for (const auto& term : *side) {
+      const std::vector<int>& own = e.design.columns[term.first].sources;
+      sources.insert(own.begin(), own.end());
+    }
+  }
+  return sources;
+}
 
 bool is_overlap(const Evidence& e) {
   const Sides& s = e.sides;

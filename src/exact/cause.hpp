@@ -1,6 +1,10 @@
 // src/exact/cause.hpp - how a relation came about, decided on its form.
 #pragma once
 
+#include <set>
+#include <string>
+#include <vector>
+
 #include "exact/relations.hpp"
 #include "exact/sides.hpp"
 
@@ -20,6 +24,9 @@ struct Evidence {
 /// 0/1 columns that count the rows in two ways, though no set of them is full and none lies in
 /// another: a + b = either + both. A level_set, told in other words.
 [[nodiscard]] bool is_overlap(const Evidence& evidence);
+
+/// The table columns that the columns of the relation are made of.
+[[nodiscard]] std::set<int> sources_of(const Evidence& evidence);
 
 /// One sentence, with full stop, in the analyst's words.
 [[nodiscard]] std::string sentence_of(const Evidence& evidence, Cause cause);

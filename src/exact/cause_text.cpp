@@ -14,6 +14,7 @@ namespace {
 using Terms = Sides::Terms;
 
 constexpr std::size_t most_named = 6;
+constexpr std::size_t most_sources_named = 3;
 
 /// A longer factor says nothing in a sentence: the equation has it.
 constexpr std::size_t most_digits_told = 24;
@@ -25,7 +26,7 @@ bool is_difference(const Evidence& e, Cause cause) {
 }
 
 std::string label(const Evidence& e, const Terms::value_type& term) {
-  return e.design.columns[term.first].label;
+  return name_in_prose(e.design.columns[term.first]);
 }
 
 /// "a, b and c"; long lists name the first few and count the others.
@@ -194,15 +195,17 @@ std::string of_too_few(const Evidence& e) {
          " columns are then tied by an equation, whatever they mean.";
 }
 
-std::string of_clock(const Evidence& e) {
+/// The names of the table columns that the relation's columns are made of, in the table's order.
+std::vector<std::string> source_names(const Evidence& e) {
   std::vector<std::string> names;
-  for (const Terms* side : {&e.sides.left, &e.sides.right}) {
-    for (const auto& term : *side) {
-      const int source = e.design.columns[term.first].sources.front();
-      const std::string& name = e.schema.columns[static_cast<std::size_t>(source)].name;
-      if (std::find(names.begin(), names.end(), name) == names.end()) names.push_back(name);
-    }
+  for (const int source : sources_of(e)) {
+    names.push_back(e.schema.columns[static_cast<std::size_t>(source)].name);
   }
+  return names;
+}
+
+std::string of_clock(const Evidence& e) {
+  const std::vector<std::string> names = source_names(e);
   return "Time is counted three ways, in " + names[0] + ", " + names[1] + " and " + names[2] +
          ": any two of them give the third.";
 }
@@ -212,6 +215,15 @@ std::string of_other(const Evidence& e) {
     const auto& given = e.sides.left.back();
     return label(e, given) + " is " + label(e, e.sides.right[0]) + " less " +
            label(e, e.sides.left[0]) + " " + in_every_row(e) + ".";
+  }
+  const std::vector<std::string> names = source_names(e);
+  if (names.size() < e.sides.columns() && names.size() <= most_sources_named) {
+    std::string made_of;
+    for (std::size_t i = 0; i < names.size(); ++i) {
+      made_of += (i == 0 ? "" : i + 1 == names.size() ? " and " : ", ") + names[i];
+    }
+    return "All of these columns are made of " + made_of +
+           ", and one of them follows from the others by this equation " + in_every_row(e) + ".";
   }
   const bool lone = e.sides.right.size() == 1 && e.sides.right.front().second == 1;
   const std::string which = lone ? label(e, e.sides.right.front()) + " follows from the others"

@@ -1,5 +1,6 @@
 // src/exact/equation.cpp - relations in writing.
 #include <algorithm>
+#include <cctype>
 #include <utility>
 
 #include "exact/clock.hpp"
@@ -69,12 +70,13 @@ std::string whole_text(const mpz_class& value) {
 
 /// A label that is a sum needs parentheses in a sum; one that is a product, beside a factor.
 std::string label_text(const design::DesignColumn& column, bool beside_factor) {
-  if (!column.definition) return column.label;
+  const std::string name = name_in_prose(column);
+  if (!column.definition) return name;
   using design::Operation;
   const Operation operation = column.definition->operation;
   const bool sum = operation == Operation::add || operation == Operation::subtract;
   const bool product = operation == Operation::multiply || operation == Operation::divide;
-  return sum || (product && beside_factor) ? "(" + column.label + ")" : column.label;
+  return sum || (product && beside_factor) ? "(" + name + ")" : name;
 }
 
 std::string term_text(const design::Design& design, std::size_t column,
@@ -128,6 +130,16 @@ std::string constant_label(const design::Design& design) {
 }
 
 }  // namespace
+
+std::string name_in_prose(const design::DesignColumn& column) {
+  const std::string& label = column.label;
+  if (label.size() < 3 || label.front() != '"' || label.back() != '"') return label;
+  const std::string inside = label.substr(1, label.size() - 2);
+  const bool plain = std::all_of(inside.begin(), inside.end(), [](unsigned char c) {
+    return std::isalnum(c) != 0 || c == '_' || c >= 0x80;
+  });
+  return plain ? inside : label;
+}
 
 std::string number_text(const mpq_class& value) {
   if (value < 0) return minus + number_text(-value);

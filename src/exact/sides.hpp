@@ -33,6 +33,10 @@ struct Sides {
 [[nodiscard]] std::string equation_of(const design::Design& design, const Sides& sides,
                                       bool as_difference);
 
+/// The label as it stands in a sentence. A name that is quoted only because the design language has
+/// a word of that spelling ("year") needs no quotes there.
+[[nodiscard]] std::string name_in_prose(const design::DesignColumn& column);
+
 /// A decimal where the value is one ("0.3048"), else a fraction ("7/3"); U+2212 for minus.
 [[nodiscard]] std::string number_text(const mpq_class& value);
 

@@ -164,7 +164,7 @@ TEST_CASE("causes of relations among plain columns") {
        {{"2001", "1970", "31"}, {"1999", "1950", "49"}, {"2010", "1990", "20"}},
        "p \u2212 b = years",
        Cause::clock_identity,
-       "Time is counted three ways, in b, years and p"},
+       "Time is counted three ways, in p, b and years"},
       {"years by name",
        {"age", "period", "cohort"},
        {{"3", "5", "2"}, {"1", "6", "5"}, {"2", "9", "7"}},
@@ -233,6 +233,24 @@ TEST_CASE("levels: a full set, two of them, one inside another") {
   CHECK(has(relations, "[zone = a] + [zone = b] = constant", Cause::level_set));
   CHECK(has(relations, "[region = north] + [region = south] = [zone = a]", Cause::nested_levels));
   CHECK(has(relations, "[region = east] + [region = west] = [zone = b]", Cause::nested_levels));
+}
+
+TEST_CASE("what arithmetic makes of the same columns is no total of parts") {
+  Matrix matrix = test::matrix_of({"a", "b"}, {{"1", "3"}, {"2", "7"}, {"5", "2"}, {"4", "9"}});
+  const auto a = test::cell(0), b = test::cell(1);
+  using design::Operation;
+  test::add_column(matrix, "a * b", test::tree(Operation::multiply, {a, b}));
+  test::add_column(
+      matrix, "a * (b + 1)",
+      test::tree(Operation::multiply, {a, test::tree(Operation::add, {b, test::number("1")})}));
+  const auto relations = relations_of(matrix);
+  CAPTURE(all_texts(relations));
+  REQUIRE(relations.size() == 1);
+  CHECK(relations[0].text == "a + a * b = a * (b + 1)");
+  CHECK(relations[0].cause == Cause::other);
+  CHECK(relations[0].cause_text ==
+        "All of these columns are made of a and b, and one of them follows from the others by this "
+        "equation in all 4 rows used.");
 }
 
 TEST_CASE("age, period and birth as levels are told as a clock") {
