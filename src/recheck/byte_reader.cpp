@@ -80,8 +80,8 @@ struct ByteReader::State {
     gzip.avail_out = static_cast<uInt>(wanted);
     const int status = inflate(&gzip, Z_NO_FLUSH);
     at = size - gzip.avail_in;
-    inside = status != Z_STREAM_END;
-    if (status == Z_STREAM_END) inflateReset(&gzip);  // further members may follow
+    if (status != Z_BUF_ERROR) inside = status != Z_STREAM_END;  // that one: nothing happened
+    if (status == Z_STREAM_END) inflateReset(&gzip);             // further members may follow
     if (status != Z_OK && status != Z_STREAM_END && status != Z_BUF_ERROR) {
       return fault("the gzip data are damaged");
     }
@@ -94,7 +94,7 @@ struct ByteReader::State {
     const std::size_t status = ZSTD_decompressStream(zstd.get(), &out, &in);
     if (ZSTD_isError(status) != 0) return fault("the Zstandard data are damaged");
     at += in.pos;
-    inside = status != 0;
+    if (in.pos > 0 || out.pos > 0) inside = status != 0;
     return out.pos;
   }
 

@@ -153,6 +153,22 @@ bool places_of(const Statement& stated, const std::vector<std::string>& names,
   return true;
 }
 
+/// With a basis N of the null space, the columns kept are independent if and only if N restricted
+/// to those left out has full row rank: else some combination of its rows holds among the kept
+/// alone.
+void claim_independence(const Statement& stated, bool parts, const std::set<std::size_t>& left_out,
+                        ClaimList& list) {
+  const bool all_rational =
+      std::all_of(stated.columns.begin(), stated.columns.end(),
+                  [](const StatedColumn& column) { return column.rational(); });
+  const std::string claim =
+      std::string("the columns kept") + (all_rational ? "" : " without log, sqrt, exp or asinh") +
+      " are independent" + (left_out.size() == stated.nullity ? ", and give those left out" : "");
+  if (stated.omitted > 0) return list.not_checked(claim + ", since relations are omitted");
+  const auto rows = coefficients(stated, {left_out.begin(), left_out.end()});
+  list.add_on_rows(parts && rows.size() == stated.nullity && rank_of(rows) == rows.size(), claim);
+}
+
 }  // namespace
 
 void claim_relations(const Statement& stated, const Found& found, ClaimList& list) {
@@ -166,23 +182,14 @@ void claim_choice(const Statement& stated, ClaimList& list) {
   const bool parts = places_of(stated, stated.kept, both) &&
                      places_of(stated, stated.left_out, both) &&
                      both.size() == stated.columns.size();
-  list.add(parts && stated.kept.size() == stated.rank && stated.left_out.size() == stated.nullity,
+  list.add(parts && stated.kept.size() == stated.numerical && stated.numerical <= stated.rank,
            counted(stated.kept.size(), "column", "columns") + " kept and " +
                grouped(stated.left_out.size()) +
-               " left out are the design, and as many as the "
-               "rank and the nullity");
+               " left out are the design, and the kept as many as " +
+               (stated.numerical == stated.rank ? "the rank" : "the rank within rounding"));
   std::set<std::size_t> left_out;
   places_of(stated, stated.left_out, left_out);
-  const std::string claim = "the columns kept are independent and give each column left out";
-  if (stated.omitted > 0) {
-    list.not_checked(claim + ", since relations are omitted");
-  } else {
-    // With a basis N of the null space, the other columns are a basis of the column space if and
-    // only if N restricted to those left out is invertible.
-    const auto square = coefficients(stated, {left_out.begin(), left_out.end()});
-    list.add_on_rows(parts && square.size() == left_out.size() && rank_of(square) == square.size(),
-                     claim);
-  }
+  claim_independence(stated, parts, left_out, list);
   claim_lost(stated, list);
   const bool fails = stated.identified == "fail", singular = stated.overall == "singular";
   list.add(fails == (stated.nullity > 0) && singular == fails,
@@ -201,8 +208,8 @@ void say_what_was_not_checked(const Statement& stated, ClaimList& list) {
   if (!names.empty())
     list.not_checked("values of columns with log, sqrt, exp or asinh, or without definition: " +
                      names);
-  if (stated.further_ranks)
-    list.not_checked("the rank within rounding and the rank of the doubles");
+  if (stated.numerical != stated.rank) list.not_checked("the rank within rounding");
+  if (stated.rank_of_the_doubles) list.not_checked("the rank of the doubles");
   list.not_checked(counted(stated.figures, "figure", "figures") +
                    " in floating point, and every grade, sentence and cause that rests on them");
   list.not_checked(

@@ -184,7 +184,8 @@ void read_rank(const Json& document, const ColumnNames& names, Statement& stated
   stated.rank = count_at(rank, "rank");
   stated.rank_columns = count_at(rank, "columns");
   stated.nullity = count_at(rank, "nullity");
-  stated.further_ranks = rank.contains("numerical") || rank.contains("rank_of_the_doubles");
+  stated.numerical = rank.contains("numerical") ? count_at(rank, "numerical") : stated.rank;
+  stated.rank_of_the_doubles = rank.contains("rank_of_the_doubles");
   if (!rank.contains("certificate")) return;
   const Json& part = rank["certificate"];
   StatedCertificate certificate;

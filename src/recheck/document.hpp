@@ -76,8 +76,10 @@ struct Statement {
   std::vector<std::string> kept, left_out, lost;
   std::string identified;  ///< the grade
   std::string overall;
-  std::size_t figures = 0;     ///< numbers in floating point, which nothing here checks
-  bool further_ranks = false;  ///< rank.numerical or rank.rank_of_the_doubles
+  std::size_t figures = 0;  ///< numbers in floating point, which nothing here checks
+  /// The rank less the relations that hold within rounding, whose columns are left out too.
+  std::uint64_t numerical = 0;
+  bool rank_of_the_doubles = false;  ///< the document gives it
   CellPlaces places;  ///< the columns of the data whose cells must be present: all that is read
   std::size_t present_columns = 0;  ///< how many
 };

@@ -1,0 +1,187 @@
+#include "recheck/table.hpp"
+
+#include <doctest/doctest.h>
+#include <zlib.h>
+#include <zstd.h>
+
+#include <cstdlib>
+#include <filesystem>
+#include <fstream>
+#include <string>
+#include <vector>
+
+using gramproof::Result;
+using gramproof::recheck::Row;
+using gramproof::recheck::Table;
+
+namespace {
+
+/// A folder of its own, removed at the end.
+class Folder {
+ public:
+  Folder() {
+    std::string pattern =
+        (std::filesystem::temp_directory_path() / "gramproof-recheck-XXXXXX").string();
+    REQUIRE(::mkdtemp(pattern.data()) != nullptr);
+    path_ = pattern;
+  }
+  Folder(const Folder&) = delete;
+  Folder& operator=(const Folder&) = delete;
+  ~Folder() { std::filesystem::remove_all(path_); }
+
+  std::string write(const std::string& name, const std::string& bytes) const {
+    const std::string path = (path_ / name).string();
+    std::ofstream(path, std::ios::binary) << bytes;
+    return path;
+  }
+  [[nodiscard]] std::string path() const { return path_.string(); }
+
+ private:
+  std::filesystem::path path_;
+};
+
+/// "row:file:line=cell|cell" for each row, or what went wrong.
+std::string read(const std::vector<std::string>& files, char separator,
+                 const std::vector<std::string>& wanted) {
+  Table table(files, separator, wanted);
+  Row row;
+  std::string text;
+  while (true) {
+    Result<bool> more = table.next(row);
+    if (!more) return "error: " + more.error().what;
+    if (!more.value()) return text;
+    text += std::to_string(row.number) + ":" + std::to_string(row.file) + ":" +
+            std::to_string(row.line) + "=";
+    for (std::size_t i = 0; i < row.cells.size(); ++i) text += (i == 0 ? "" : "|") + row.cells[i];
+    text += " ";
+  }
+}
+
+std::string gzipped(const std::string& text) {
+  z_stream stream{};
+  REQUIRE(deflateInit2(&stream, 6, Z_DEFLATED, 15 + 16, 8, Z_DEFAULT_STRATEGY) == Z_OK);
+  std::string bytes(deflateBound(&stream, text.size()), '\0');
+  std::string input = text;
+  stream.next_in = reinterpret_cast<Bytef*>(input.data());
+  stream.avail_in = static_cast<uInt>(input.size());
+  stream.next_out = reinterpret_cast<Bytef*>(bytes.data());
+  stream.avail_out = static_cast<uInt>(bytes.size());
+  REQUIRE(deflate(&stream, Z_FINISH) == Z_STREAM_END);
+  bytes.resize(stream.total_out);
+  deflateEnd(&stream);
+  return bytes;
+}
+
+std::string zstandard(const std::string& text) {
+  std::string bytes(ZSTD_compressBound(text.size()), '\0');
+  const std::size_t size = ZSTD_compress(bytes.data(), bytes.size(), text.data(), text.size(), 3);
+  REQUIRE(ZSTD_isError(size) == 0);
+  bytes.resize(size);
+  return bytes;
+}
+
+}  // namespace
+
+TEST_CASE("delimited text: nasty cases") {
+  struct Case {
+    std::string text;
+    char separator;
+    std::string rows;  ///< of columns a and b
+    std::string why;
+  };
+  const std::vector<Case> cases = {
+      {"a,b\n1,2\n", ',', "1:0:2=1|2 ", "plain"},
+      {"a,b\n1,2", ',', "1:0:2=1|2 ", "no end of the last line"},
+      {"a,b\r\n1,2\r\n", ',', "1:0:2=1|2 ", "CRLF"},
+      {"a,b\r\n1,2\r", ',', "1:0:2=1|2 ", "a carriage return at the very end"},
+      {"\xEF\xBB\xBF"
+       "a,b\n1,2\n",
+       ',', "1:0:2=1|2 ", "a byte order mark"},
+      {"\xEF\xBB\xBF\"a\",b\n1,2\n", ',', "1:0:2=1|2 ", "a byte order mark before a quote"},
+      {"b,a\n1,2\n", ',', "1:0:2=2|1 ", "columns in another order"},
+      {"x,a,y,b\n0,1,0,2\n", ',', "1:0:2=1|2 ", "columns that are not wanted"},
+      {" a , b \n 1 ,\t2 \n", ',', "1:0:2=1|2 ", "blanks around names and cells"},
+      {"a,b\n\"1\",\"2\"\n", ',', "1:0:2=1|2 ", "quoted"},
+      {"a,b\n  \"1\"\t,2\n", ',', "1:0:2=1|2 ", "blanks around quotes"},
+      {"a,b\n\" 1 \",2\n", ',', "1:0:2= 1 |2 ", "blanks inside quotes are of the cell"},
+      {"a,b\n\"1,5\",2\n", ',', "1:0:2=1,5|2 ", "a separator inside quotes"},
+      {"a,b\n\"say \"\"no\"\"\",2\n", ',', "1:0:2=say \"no\"|2 ", "doubled quotes"},
+      {"a,b\n\"\"\"\",2\n", ',', "1:0:2=\"|2 ", "nothing but a quote"},
+      {"a,b\n\"two\nlines\",2\n3,4\n", ',', "1:0:2=two\nlines|2 2:0:4=3|4 ",
+       "a line break inside quotes counts as a line"},
+      {"a,b\n\"x\r\ny\",2\n", ',', "1:0:2=x\r\ny|2 ", "CRLF inside quotes is kept"},
+      {"a,b\n,\n", ',', "1:0:2=| ", "empty cells"},
+      {"a,b\n1,", ',', "1:0:2=1| ", "the last cell empty, and no end"},
+      {"a;b\n1,5;2\n", ';', "1:0:2=1,5|2 ", "semicolons"},
+      {"a\tb\n1\t\n\t\n", '\t', "1:0:2=1| 2:0:3=| ", "tabs are separators here, no blanks"},
+      {"a b\n1 2\n", ' ', "1:0:2=1|2 ", "blanks as separators"},
+      {"a,b\n1,2\n\n \n\n", ',', "1:0:2=1|2 ", "blank lines at the end are nothing"},
+      {"a,b\n", ',', "", "no rows"},
+      {"a,b\n1,2\n\n3,4\n", ',', "error: a blank line in the middle of the data",
+       "a blank line in the middle"},
+      {"a,b\n1\n", ',', "error: this row has 1 cell where the header has 2", "too few cells"},
+      {"a,b\n1,2,3\n", ',', "error: this row has 3 cells where the header has 2", "too many cells"},
+      {"a,b\n1\"2\",3\n", ',', "error: a quote in the middle of a cell", "a stray quote"},
+      {"a,b\n\"1\"2,3\n", ',', "error: text behind the closing quote of a cell",
+       "text behind a quote"},
+      {"a,b\n\"1,3\n", ',', "error: a quoted cell never ends", "an open quote"},
+      {"a,b\n1\r2,3\n", ',', "error: a carriage return that ends no line",
+       "a lone carriage return"},
+      {"a,c\n1,2\n", ',', "error: no column \"b\"", "a column that is absent"},
+      {"a,b,b\n1,2,3\n", ',', "error: more than one column \"b\"", "a column named twice"},
+      {"", ',', "error: the file has no header", "an empty file"},
+      {"\n1,2\n", ',', "error: the file has no header", "a blank first line"},
+  };
+  const Folder folder;
+  for (const Case& one : cases) {
+    CAPTURE(one.why);
+    const std::string file = folder.write("case.csv", one.text);
+    CHECK(read({file}, one.separator, {"a", "b"}) == one.rows);
+  }
+}
+
+TEST_CASE("delimited text: a file of one column") {
+  const Folder folder;
+  const std::string file = folder.write("one.csv", "a\n1\n\n \n\"\"\n4\n\n");
+  CHECK(read({file}, ',', {"a"}) == "1:0:2=1 2:0:3= 3:0:4= 4:0:5= 5:0:6=4 ");
+}
+
+TEST_CASE("delimited text: several files are one table") {
+  const Folder folder;
+  const std::string first = folder.write("first.csv", "a,b\n1,2\n3,4\n");
+  const std::string second = folder.write("second.csv", "b,c,a\r\n6,0,5");
+  CHECK(read({first, second}, ',', {"a", "b"}) == "1:0:2=1|2 2:0:3=3|4 3:1:2=5|6 ");
+  CHECK(read({first, folder.path() + "/none.csv"}, ',', {"a"}) == "error: no such file");
+  CHECK(read({folder.path()}, ',', {"a"}) == "error: this is a directory");
+}
+
+TEST_CASE("delimited text: compressed files are recognised by their first bytes") {
+  const Folder folder;
+  std::string text = "a,b\n";
+  std::string rows;
+  for (int i = 1; i <= 60'000; ++i)
+    text += std::to_string(i) + "," + std::to_string(i * i % 97) + "\n";
+  const std::string plain = folder.write("plain", text);
+  const std::string wanted = read({plain}, ',', {"a", "b"});
+  const std::size_t half = text.find("\n30000,") + 1;
+  struct Case {
+    std::string bytes;
+    std::string why;
+  };
+  const std::vector<Case> cases = {
+      {gzipped(text), "gzip"},
+      {zstandard(text), "Zstandard"},
+      {gzipped(text.substr(0, half)) + gzipped(text.substr(half)), "two members"},
+      {zstandard(text.substr(0, half)) + zstandard(text.substr(half)), "two frames"},
+  };
+  for (const Case& one : cases) {
+    CAPTURE(one.why);
+    CHECK(read({folder.write("packed", one.bytes)}, ',', {"a", "b"}) == wanted);
+    const std::string cut = one.bytes.substr(0, one.bytes.size() - 9);
+    CHECK(read({folder.write("cut", cut)}, ',', {"a", "b"}) ==
+          "error: the compressed file ends too early");
+  }
+  std::string damaged = gzipped(text);
+  damaged[damaged.size() / 2] = static_cast<char>(~damaged[damaged.size() / 2]);
+  CHECK(read({folder.write("damaged", damaged)}, ',', {"a"}).starts_with("error: "));
+}
