@@ -9,6 +9,13 @@
 namespace gramproof::recheck {
 namespace {
 
+/// A label for a sum: those that are sums or products themselves stand in parentheses.
+std::string operand(const std::string& label) {
+  const bool bracket = label.starts_with('[') && label.ends_with(']');
+  if (bracket || label.find_first_of(" +-*/^") == std::string::npos) return label;
+  return "(" + label + ")";
+}
+
 /// The relation from its terms; the document's own sentence is not read.
 std::string equation(const Statement& stated, const StatedRelation& relation) {
   constexpr std::size_t most_terms = 12;
@@ -18,7 +25,7 @@ std::string equation(const Statement& stated, const StatedRelation& relation) {
     const mpz_class size = abs(coefficient);
     text += coefficient < 0 ? (i == 0 ? "-" : " - ") : (i == 0 ? "" : " + ");
     if (size != 1) text += size.get_str() + "*";
-    text += stated.columns[column].name;
+    text += operand(stated.columns[column].name);
   }
   if (relation.terms.size() > most_terms)
     text += " and " + grouped(relation.terms.size() - most_terms) + " terms more";

@@ -33,6 +33,10 @@ MADE = [
     ("one column, with an empty line", [("a.csv", "x\n1\n\n3\n4\n\n\n")], ["--design", "constant, x, x^2"]),
     ("one row is off", [("a.csv", "p,q,total\n" + "".join(f"{i % 7},{i * i % 11},{i % 7 + i * i % 11 + (i == 40) * 5}\n" for i in range(90)))],
      ["--design", "constant, p, q, total"]),
+    ("a relation of logarithms", [("a.csv", "x,y,z\n" + "".join(f"{1 + i * 7 % 31},{1 + i * i % 37},{i * 5 % 17}\n" for i in range(60)))],
+     ["--design", "constant, log(x), log(y), log(x * y), z, 2 * z, [log(z + 2) > 1], sqrt(abs(z - 3)), exp(z / 9), asinh(x)"]),
+    ("texts compared", [("a.csv", "g,h,x\n" + "".join(f"{'ab c'[i % 4]},{'abd'[i % 3]},{i}\n" for i in range(50)))],
+     ["--design", 'constant, all_levels(g), all_levels(h), [g = column("h")], x, [x >= 3] * [x < 40]', "--rows", "not (row = 7 or x = 9)"]),
     ("compressed", [("a.csv.gz", "p,q,r\n1,2,3\n4,5,9\n2,2,4\n9,1,10\n")], ["--design", "constant, p, q, r"]),
 ]
 

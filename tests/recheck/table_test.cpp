@@ -4,41 +4,17 @@
 #include <zlib.h>
 #include <zstd.h>
 
-#include <cstdlib>
-#include <filesystem>
-#include <fstream>
 #include <string>
 #include <vector>
+
+#include "support/scratch.hpp"
 
 using gramproof::Result;
 using gramproof::recheck::Row;
 using gramproof::recheck::Table;
+using gramproof::test::Scratch;
 
 namespace {
-
-/// A folder of its own, removed at the end.
-class Folder {
- public:
-  Folder() {
-    std::string pattern =
-        (std::filesystem::temp_directory_path() / "gramproof-recheck-XXXXXX").string();
-    REQUIRE(::mkdtemp(pattern.data()) != nullptr);
-    path_ = pattern;
-  }
-  Folder(const Folder&) = delete;
-  Folder& operator=(const Folder&) = delete;
-  ~Folder() { std::filesystem::remove_all(path_); }
-
-  std::string write(const std::string& name, const std::string& bytes) const {
-    const std::string path = (path_ / name).string();
-    std::ofstream(path, std::ios::binary) << bytes;
-    return path;
-  }
-  [[nodiscard]] std::string path() const { return path_.string(); }
-
- private:
-  std::filesystem::path path_;
-};
 
 /// "row:file:line=cell|cell" for each row, or what went wrong.
 std::string read(const std::vector<std::string>& files, char separator,
@@ -132,36 +108,35 @@ TEST_CASE("delimited text: nasty cases") {
       {"", ',', "error: the file has no header", "an empty file"},
       {"\n1,2\n", ',', "error: the file has no header", "a blank first line"},
   };
-  const Folder folder;
+  const Scratch folder;
   for (const Case& one : cases) {
     CAPTURE(one.why);
-    const std::string file = folder.write("case.csv", one.text);
+    const std::string file = folder.file("case.csv", one.text);
     CHECK(read({file}, one.separator, {"a", "b"}) == one.rows);
   }
 }
 
 TEST_CASE("delimited text: a file of one column") {
-  const Folder folder;
-  const std::string file = folder.write("one.csv", "a\n1\n\n \n\"\"\n4\n\n");
+  const Scratch folder;
+  const std::string file = folder.file("one.csv", "a\n1\n\n \n\"\"\n4\n\n");
   CHECK(read({file}, ',', {"a"}) == "1:0:2=1 2:0:3= 3:0:4= 4:0:5= 5:0:6=4 ");
 }
 
 TEST_CASE("delimited text: several files are one table") {
-  const Folder folder;
-  const std::string first = folder.write("first.csv", "a,b\n1,2\n3,4\n");
-  const std::string second = folder.write("second.csv", "b,c,a\r\n6,0,5");
+  const Scratch folder;
+  const std::string first = folder.file("first.csv", "a,b\n1,2\n3,4\n");
+  const std::string second = folder.file("second.csv", "b,c,a\r\n6,0,5");
   CHECK(read({first, second}, ',', {"a", "b"}) == "1:0:2=1|2 2:0:3=3|4 3:1:2=5|6 ");
-  CHECK(read({first, folder.path() + "/none.csv"}, ',', {"a"}) == "error: no such file");
-  CHECK(read({folder.path()}, ',', {"a"}) == "error: this is a directory");
+  CHECK(read({first, folder.path().string() + "/none.csv"}, ',', {"a"}) == "error: no such file");
+  CHECK(read({folder.path().string()}, ',', {"a"}) == "error: this is a directory");
 }
 
 TEST_CASE("delimited text: compressed files are recognised by their first bytes") {
-  const Folder folder;
+  const Scratch folder;
   std::string text = "a,b\n";
-  std::string rows;
   for (int i = 1; i <= 60'000; ++i)
     text += std::to_string(i) + "," + std::to_string(i * i % 97) + "\n";
-  const std::string plain = folder.write("plain", text);
+  const std::string plain = folder.file("plain", text);
   const std::string wanted = read({plain}, ',', {"a", "b"});
   const std::size_t half = text.find("\n30000,") + 1;
   struct Case {
@@ -176,12 +151,12 @@ TEST_CASE("delimited text: compressed files are recognised by their first bytes"
   };
   for (const Case& one : cases) {
     CAPTURE(one.why);
-    CHECK(read({folder.write("packed", one.bytes)}, ',', {"a", "b"}) == wanted);
+    CHECK(read({folder.file("packed", one.bytes)}, ',', {"a", "b"}) == wanted);
     const std::string cut = one.bytes.substr(0, one.bytes.size() - 9);
-    CHECK(read({folder.write("cut", cut)}, ',', {"a", "b"}) ==
+    CHECK(read({folder.file("cut", cut)}, ',', {"a", "b"}) ==
           "error: the compressed file ends too early");
   }
   std::string damaged = gzipped(text);
   damaged[damaged.size() / 2] = static_cast<char>(~damaged[damaged.size() / 2]);
-  CHECK(read({folder.write("damaged", damaged)}, ',', {"a"}).starts_with("error: "));
+  CHECK(read({folder.file("damaged", damaged)}, ',', {"a"}).starts_with("error: "));
 }
