@@ -61,6 +61,13 @@ class Readme(unittest.TestCase):
                 run = self.run_in_folder(["bash", "-o", "pipefail", "-c", example])
                 self.assertIn(run.returncode, (0, 1), run.stderr)
 
+    def test_a_verdict_is_checked_as_shown(self):
+        commands = re.findall(r"^    (gramproof .*)$", section("Checking a verdict"), re.MULTILINE)
+        self.assertEqual([command.split()[1] for command in commands], ["check", "recheck"])
+        self.assertIn(self.run_in_folder(commands[0].split()).returncode, (0, 1))
+        run = self.run_in_folder(commands[1].split())
+        self.assertEqual((run.returncode, run.stderr), (0, ""))
+
     def check_design(self, term):
         design = term if term == "constant" else f"constant, {term}"
         return self.run_in_folder([GRAMPROOF, "check", "small.csv", "--design", design])
