@@ -42,7 +42,7 @@ std::size_t irrational_columns(const Statement& stated) {
 }
 
 /// The determinant is what it is said to be and not zero.
-void claim_determinant(const StatedCertificate& certificate, const Found& found, ClaimList& list) {
+bool claim_determinant(const StatedCertificate& certificate, const Found& found, ClaimList& list) {
   const std::size_t size = certificate.columns.size();
   const std::string claim = "their determinant is " + certificate.residue.get_str() +
                             " modulo the prime, not 0: these " +
@@ -55,11 +55,12 @@ void claim_determinant(const StatedCertificate& certificate, const Found& found,
   if (found.matrix.size() != size || !square)
     return list.add_on_rows(false, claim, "it cannot be computed from rows that are not used");
   const std::uint64_t value = determinant(found.matrix, certificate.prime.get_ui());
-  list.add_on_rows(value != 0 && certificate.residue == mpz_class(value), claim,
-                   "it is " + std::to_string(value));
+  return list.add_on_rows(value != 0 && certificate.residue == mpz_class(value), claim,
+                          "it is " + std::to_string(value));
 }
 
-void claim_certificate(const Statement& stated, const Found& found, ClaimList& list) {
+/// Whether its columns are shown to be independent.
+bool claim_certificate(const Statement& stated, const Found& found, ClaimList& list) {
   const StatedCertificate& certificate = *stated.certificate;
   constexpr int trials = 40;  // a composite passes with a probability below 4^-40 (Rabin 1980)
   const bool fits = prime_fits(certificate.prime);
@@ -76,7 +77,7 @@ void claim_certificate(const Statement& stated, const Found& found, ClaimList& l
                        " are among the rows used" +
                        (stated.weight ? ", with weights above zero" : ""),
                    unused);
-  if (prime) claim_determinant(certificate, found, list);
+  const bool independent = prime && claim_determinant(certificate, found, list);
   // Without a relation to test, the rows of the certificate suffice.
   const bool all = certificate.rows_tested == found.rows_used;
   const bool enough = stated.nullity == 0 && certificate.rows_tested <= found.rows_used;
@@ -84,36 +85,39 @@ void claim_certificate(const Statement& stated, const Found& found, ClaimList& l
                    rows_text(certificate.rows_tested) + " tested are " +
                        (stated.nullity == 0 ? "among the rows used" : "all rows used"),
                    "the rows used are " + grouped(found.rows_used));
+  return independent;
 }
 
-void claim_lower_bound(const Statement& stated, ClaimList& list) {
-  const std::size_t proved = stated.certificate ? stated.certificate->columns.size() : 0;
+/// `proved`: how many columns are shown to be independent.
+void claim_lower_bound(const Statement& stated, std::size_t proved, ClaimList& list) {
   const std::size_t irrational = irrational_columns(stated);
+  const std::string shown = "shown to be independent are " + grouped(proved);
   if (irrational == 0) {
-    list.add(proved == stated.rank, "the rank is at least " + grouped(stated.rank),
-             "the certificate has " + counted(proved, "column", "columns"));
+    list.add_on_rows(proved == stated.rank, "the rank is at least " + grouped(stated.rank), shown);
     return;
   }
   const std::uint64_t rational = stated.rank - std::min<std::uint64_t>(irrational, stated.rank);
-  list.add(
+  list.add_on_rows(
       proved == rational && stated.rank >= irrational,
       "the rank of the columns without log, sqrt, exp or asinh is at least " + grouped(rational),
-      "the certificate has " + counted(proved, "column", "columns"));
+      shown);
   list.not_checked("that the other " + counted(irrational, "column adds", "columns add") + " " +
                    grouped(irrational) + " to the rank");
 }
 
 }  // namespace
 
-void ClaimList::add(bool holds, const std::string& claim, const std::string& found) {
+bool ClaimList::add(bool holds, const std::string& claim, const std::string& found) {
   const bool explain = !holds && !found.empty();
   claims_.push_back(
       {holds ? Outcome::upheld : Outcome::not_upheld, claim + (explain ? ": " + found : "")});
+  return holds;
 }
 
-void ClaimList::add_on_rows(bool holds, const std::string& claim, const std::string& found) {
-  if (!rows_settled_) return not_checked(claim);
-  add(holds, claim, found);
+bool ClaimList::add_on_rows(bool holds, const std::string& claim, const std::string& found) {
+  if (rows_settled_) return add(holds, claim, found);
+  not_checked(claim);
+  return false;
 }
 
 void ClaimList::not_checked(const std::string& what) {
@@ -158,8 +162,8 @@ void claim_rank(const Statement& stated, const Found& found, ClaimList& list) {
   list.add(stated.rank <= columns && stated.nullity == columns - stated.rank,
            "rank " + grouped(stated.rank) + " and nullity " + grouped(stated.nullity) +
                " together are the columns");
-  if (stated.certificate) claim_certificate(stated, found, list);
-  claim_lower_bound(stated, list);
+  const bool independent = stated.certificate && claim_certificate(stated, found, list);
+  claim_lower_bound(stated, independent ? stated.certificate->columns.size() : 0, list);
 }
 
 }  // namespace gramproof::recheck

@@ -15,8 +15,9 @@ class ClaimList {
  public:
   explicit ClaimList(bool rows_settled) : rows_settled_(rows_settled) {}
   /// `found`: what was found instead, for a claim that is not upheld.
-  void add(bool holds, const std::string& claim, const std::string& found = "");
-  void add_on_rows(bool holds, const std::string& claim, const std::string& found = "");
+  /// True if it holds.
+  bool add(bool holds, const std::string& claim, const std::string& found = "");
+  bool add_on_rows(bool holds, const std::string& claim, const std::string& found = "");
   void not_checked(const std::string& what);
   [[nodiscard]] std::vector<Claim>& claims() { return claims_; }
 

@@ -76,16 +76,23 @@ void claim_exception(const StatedRelation& relation, const FoundRelation& found,
   claim_violations(relation, found, name, list);
 }
 
-void claim_relation(const Statement& stated, const StatedRelation& relation,
+/// Whether it is shown to hold in all rows used; false for one that has exceptions.
+bool claim_relation(const Statement& stated, const StatedRelation& relation,
                     const FoundRelation& found, ClaimList& list) {
   const std::string name = "relation " + std::to_string(relation.number);
   const std::string text = equation(stated, relation);
   if (relation.terms.empty()) return list.add(false, name + " has terms");
-  if (!found.rational) return list.not_checked(name + ": " + text + ", not rational");
+  if (!found.rational) {
+    list.not_checked(name + ": " + text + ", not rational");
+    return false;
+  }
   list.add(is_primitive(relation),
            name + ": its coefficients are whole, without common divisor, the first positive");
-  if (relation.except) return claim_exception(relation, found, name, text, list);
-  list.add_on_rows(
+  if (relation.except) {
+    claim_exception(relation, found, name, text, list);
+    return false;
+  }
+  return list.add_on_rows(
       found.violating == 0 && relation.rows_holding == found.holding &&
           relation.rows_violating == 0 && relation.violations.empty() &&
           relation.largest_residual == 0,
@@ -115,23 +122,22 @@ std::vector<std::size_t> all_columns(const Statement& stated) {
   return columns;
 }
 
-void claim_upper_bound(const Statement& stated, ClaimList& list) {
+/// `hold`: the exact relations are shown to hold.
+void claim_upper_bound(const Statement& stated, bool hold, ClaimList& list) {
   const auto rows = coefficients(stated, all_columns(stated));
-  list.add(rank_of(rows) == rows.size(),
-           "the " + counted(rows.size(), "exact relation", "exact relations") + " listed " +
-               (rows.size() == 1 ? "is" : "are") + " independent");
-  list.add(rows.size() + stated.omitted == stated.nullity,
-           counted(rows.size(), "exact relation", "exact relations") + " listed and " +
-               grouped(stated.omitted) + " omitted are the nullity",
-           "that is " + grouped(stated.nullity));
+  const std::string relations = counted(rows.size(), "exact relation", "exact relations");
+  const bool independent = list.add(
+      rank_of(rows) == rows.size(),
+      "the " + relations + " listed " + (rows.size() == 1 ? "is" : "are") + " independent");
+  const bool complete =
+      list.add(rows.size() + stated.omitted == stated.nullity,
+               relations + " listed and " + grouped(stated.omitted) + " omitted are the nullity",
+               "that is " + grouped(stated.nullity));
   const std::string bound = "the rank is at most " + grouped(stated.rank);
-  if (stated.omitted > 0) {
-    list.not_checked(bound + ", since relations are omitted; those listed show at most " +
-                     grouped(stated.columns.size() - rows.size()));
-    return;
-  }
-  list.add_on_rows(rank_of(rows) + stated.rank == stated.columns.size(), bound,
-                   "the relations listed do not show it");
+  if (stated.omitted > 0) return list.not_checked(bound + ", since relations are omitted");
+  list.add_on_rows(
+      hold && independent && complete && stated.rank + stated.nullity == stated.columns.size(),
+      bound, "what it rests on is not upheld");
 }
 
 void claim_lost(const Statement& stated, ClaimList& list) {
@@ -179,9 +185,12 @@ void claim_independence(const Statement& stated, bool parts, const std::set<std:
 }  // namespace
 
 void claim_relations(const Statement& stated, const Found& found, ClaimList& list) {
-  for (std::size_t i = 0; i < stated.relations.size(); ++i)
-    claim_relation(stated, stated.relations[i], found.relations[i], list);
-  claim_upper_bound(stated, list);
+  bool hold = true;
+  for (std::size_t i = 0; i < stated.relations.size(); ++i) {
+    const bool here = claim_relation(stated, stated.relations[i], found.relations[i], list);
+    hold = hold && (here || stated.relations[i].except);
+  }
+  claim_upper_bound(stated, hold, list);
 }
 
 void claim_choice(const Statement& stated, ClaimList& list) {

@@ -11,7 +11,7 @@ namespace {
 constexpr std::size_t largest_document = 256 * 1024 * 1024;
 constexpr std::size_t deepest = 50'000;
 constexpr std::size_t most_columns = 100'000;
-constexpr std::size_t most_relations = 10'000;
+constexpr std::size_t most_relations = 1'000;
 
 /// Thrown inside this file alone, where every second line can meet a key that is absent;
 /// read_document() turns it into an Error.

@@ -1,6 +1,6 @@
 // src/recheck/document.hpp - what a verdict document states that can be checked.
 //
-// Limits on a document: 256 MB, nested at most 50,000 deep, 100,000 design columns, 10,000 exact
+// Limits on a document: 256 MB, nested at most 50,000 deep, 100,000 design columns, 1,000 exact
 // relations.
 #pragma once
 

@@ -30,8 +30,8 @@ State worst(const Value* operands, std::size_t count) {
     return std::any_of(operands, operands + count,
                        [&](const Value& value) { return value.state == wanted; });
   };
-  for (const State worse :
-       {State::irrational, State::unsettled, State::undefined, State::not_number}) {
+  for (const State worse : {State::irrational, State::unsettled, State::undefined,
+                            State::not_number, State::too_large}) {
     if (any(worse)) state = worse;
   }
   return state;
@@ -55,6 +55,10 @@ Value power_of(const Value& base, long exponent) {
   if (base.state != State::rational) return base;
   if (exponent < 0 && base.number == 0) return without_number(State::undefined);
   const auto times = static_cast<unsigned long>(std::labs(exponent));
+  constexpr std::size_t most_bits = 10'000'000;
+  const std::size_t bits = std::max(mpz_sizeinbase(base.number.get_num_mpz_t(), 2),
+                                    mpz_sizeinbase(base.number.get_den_mpz_t(), 2));
+  if (bits * times > most_bits) return without_number(State::too_large);
   mpz_class above, below;
   mpz_pow_ui(above.get_mpz_t(), base.number.get_num_mpz_t(), times);
   mpz_pow_ui(below.get_mpz_t(), base.number.get_den_mpz_t(), times);
@@ -72,9 +76,21 @@ Value with_domain(const Value& operand, bool at_zero) {
   return without_number(inside ? State::irrational : State::undefined);
 }
 
+const Value& cell_value(std::size_t place, const RowCells& cells) {
+  std::optional<Value>& known = (*cells.numbers)[place];
+  if (!known) {
+    std::optional<mpq_class> number = read_decimal((*cells.texts)[place], cells.decimal_mark);
+    known = number ? rational(std::move(*number)) : without_number(State::not_number);
+  }
+  return *known;
+}
+
 Value quotient(const Value& above, const Value& below) {
   if (below.state == State::rational && below.number == 0) return without_number(State::undefined);
-  if (above.state == State::undefined || above.state == State::not_number) return above;
+  for (const Value* value : {&above, &below}) {
+    const bool fault = value->state == State::not_number || value->state == State::too_large;
+    if (fault || value->state == State::undefined) return *value;
+  }
   if (below.state == State::irrational) return without_number(State::unsettled);
   if (below.state != State::rational) return below;
   if (above.state != State::rational) return above;
@@ -263,19 +279,14 @@ Value Formula::apply(const Node& node, const Value* operands) {
 }
 
 Value Formula::evaluate(const RowCells& cells) const {
+  if (nodes_.size() == 1 && nodes_.front().kind == Kind::cell)
+    return cell_value(nodes_.front().place, cells);
   std::vector<Value> stack;
   for (const Node& node : nodes_) {
     switch (node.kind) {
-      case Kind::cell: {
-        std::optional<Value>& known = (*cells.numbers)[node.place];
-        if (!known) {
-          std::optional<mpq_class> number =
-              read_decimal((*cells.texts)[node.place], cells.decimal_mark);
-          known = number ? rational(std::move(*number)) : without_number(State::not_number);
-        }
-        stack.push_back(*known);
+      case Kind::cell:
+        stack.push_back(cell_value(node.place, cells));
         break;
-      }
       case Kind::number:
         stack.push_back(rational(node.number));
         break;

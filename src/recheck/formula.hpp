@@ -36,6 +36,7 @@ struct Value {
     irrational,  ///< defined, but made with log, sqrt, exp or asinh
     unsettled,   ///< may be undefined: a denominator or logarithm of something irrational
     not_number,  ///< a cell that should be a number is none
+    too_large,   ///< a power of over 10,000,000 bits, where GMP could end the program
   };
   State state = State::rational;
   mpq_class number;

@@ -42,6 +42,18 @@ std::optional<long> take_exponent(std::string_view text) {
   return negative ? -exponent : exponent;
 }
 
+/// The digits of both, one behind the other.
+mpz_class integer_of(std::string_view whole, std::string_view fraction) {
+  constexpr std::size_t most_short_digits = 18;
+  if (whole.size() + fraction.size() > most_short_digits)
+    return mpz_class(std::string(whole) + std::string(fraction), 10);
+  unsigned long number = 0;
+  for (const std::string_view digits : {whole, fraction}) {
+    for (const char digit : digits) number = number * 10 + static_cast<unsigned long>(digit - '0');
+  }
+  return mpz_class(number);
+}
+
 mpq_class scaled(const mpz_class& digits, long exponent) {
   if (exponent == 0) return mpq_class(digits);
   mpz_class power;
@@ -67,7 +79,7 @@ std::optional<mpq_class> read_decimal(std::string_view text, char decimal_mark) 
   if (whole.empty() && fraction.empty()) return std::nullopt;
   const std::optional<long> exponent = take_exponent(text);
   if (!exponent) return std::nullopt;
-  mpz_class digits(std::string(whole) + std::string(fraction), 10);
+  mpz_class digits = integer_of(whole, fraction);
   if (negative) digits = -digits;
   return scaled(digits, *exponent - static_cast<long>(fraction.size()));
 }

@@ -71,9 +71,14 @@ class Reading {
     return {&row_.cells, stated_.decimal_mark, static_cast<unsigned long>(row_.number), &numbers_};
   }
 
-  Error not_a_number() const {
+  [[nodiscard]] Error unreadable(State state) const {
+    if (state == State::too_large)
+      return {ErrorKind::limit, place(), "a power of over 10,000,000 bits", ""};
     return {ErrorKind::data, place(), "a cell that the verdict reads as a number is none",
             "are these the data of the verdict?"};
+  }
+  static bool is_unreadable(State state) {
+    return state == State::not_number || state == State::too_large;
   }
 
   /// Whether the row is used; it is counted where it is not.
@@ -104,7 +109,7 @@ class Reading {
     if (std::any_of(reads.begin(), reads.end(), [&](std::size_t i) { return missing_[i]; }))
       return true;
     const Value value = stated_.filter->evaluate(cells());
-    if (value.state == State::not_number) return not_a_number();
+    if (is_unreadable(value.state)) return unreadable(value.state);
     if (value.state == State::rational && value.number == 1) return true;
     if (value.state == State::rational) ++found_.excluded[{"filter", ""}];
     if (value.state == State::undefined) ++found_.excluded[{"undefined", ""}];
@@ -139,7 +144,7 @@ class Reading {
     for (std::size_t j = 0; j < values_.size(); ++j) {
       const StatedColumn& column = stated_.columns[j];
       values_[j] = column.formula ? column.formula->evaluate(cells()) : Value{State::unsettled, {}};
-      if (values_[j].state == State::not_number) return not_a_number();
+      if (is_unreadable(values_[j].state)) return unreadable(values_[j].state);
       if (values_[j].state == State::unsettled) settled = false;
       if (values_[j].state != State::undefined) continue;
       ++found_.excluded[{"undefined", column.name}];

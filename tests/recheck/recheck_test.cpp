@@ -2,6 +2,7 @@
 
 #include <doctest/doctest.h>
 
+#include <algorithm>
 #include <functional>
 #include <string>
 #include <vector>
@@ -99,7 +100,7 @@ TEST_CASE("recheck: each claim is refused where it is untrue") {
        },
        "their determinant is 0 modulo"},
       {"no certificate", [](json& d) { d["rank"].erase("certificate"); },
-       "the rank is at least 3: the certificate has 0 columns"},
+       "the rank is at least 3: shown to be independent are 0"},
       {"rows tested", [](json& d) { d["rank"]["certificate"]["rows_tested"] = 3; },
        "3 rows tested are all rows used"},
       {"a coefficient", [](json& d) { d["relations"][0]["terms"][1]["coefficient"] = "2"; },
@@ -206,8 +207,19 @@ TEST_CASE("recheck: what it does not settle is not checked, and never upheld") {
   const Outcomes outcomes = outcomes_of(folder, document.dump(), small_data);
   CHECK(outcomes.error == "");
   CHECK(outcomes.upheld == 12);  // what does not depend on which rows are used
-  CHECK(outcomes.refused.size() == 1);
-  CHECK(outcomes.refused.front().starts_with("the rank of the columns without log"));
+  CHECK(outcomes.refused.empty());
+
+  // Bounds on the rank are not upheld while what they rest on is not.
+  json untrue = small_document();
+  untrue["rank"]["certificate"]["residue"] = "94";
+  untrue["relations"][0]["terms"][2]["coefficient"] = "-2";
+  const Outcomes both = outcomes_of(folder, untrue.dump(), small_data);
+  const auto refused = [&both](const std::string& claim) {
+    return std::any_of(both.refused.begin(), both.refused.end(),
+                       [&](const std::string& text) { return text.starts_with(claim); });
+  };
+  CHECK(refused("the rank is at least 3"));
+  CHECK(refused("the rank is at most 3"));
 
   json omitted = small_document();
   omitted["rank"]["nullity"] = 1;
@@ -241,6 +253,12 @@ TEST_CASE("recheck: where nothing can be checked") {
       {"a key is absent", changed([](json& d) { d.erase("kept"); }), small_data, "no key \"kept\""},
       {"a negative count", changed([](json& d) { d["source"]["rows_read"] = -5; }), small_data,
        "\"rows_read\" is no count"},
+      {"a power that would fill the memory", changed([](json& d) {
+         json& definition = d["design"]["columns"][0]["definition"];
+         for (int i = 0; i < 6; ++i)
+           definition = {{"power", json::array({definition})}, {"exponent", 64}};
+       }),
+       small_data, "a power of over 10,000,000 bits"},
       {"a broken coefficient",
        changed([](json& d) { d["relations"][0]["terms"][0]["coefficient"] = "1.5"; }), small_data,
        "\"coefficient\" is no integer"},
