@@ -136,7 +136,7 @@ TEST_CASE("Filip and Hilbert: full rank is proved; with a column replaced the re
   const std::vector<Case> cases = {
       {"Filip's polynomial of degree 10 (NIST), as recorded", ""},
       {"Filip with one power replaced by a combination",
-       "x + 4\u00b7x^6 = 12\u00b7x^2 + 4\u00b7x^7"},
+       "x + 4\u00b7\"x^6\" = 12\u00b7\"x^2\" + 4\u00b7\"x^7\""},
       {"12 x 12 Hilbert in decimals", ""},
       {"Hilbert with a column replaced by a combination", "2\u00b7x2 + x12 = 5\u00b7x5 + x9"},
   };
