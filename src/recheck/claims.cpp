@@ -154,7 +154,7 @@ void claim_rows(const Statement& stated, const Found& found, ClaimList& list) {
   list.add_on_rows(wrong.empty(), "in how many rows each column is not zero", wrong);
 }
 
-void claim_rank(const Statement& stated, const Found& found, ClaimList& list) {
+bool claim_rank(const Statement& stated, const Found& found, ClaimList& list) {
   const std::uint64_t columns = stated.columns.size();
   list.add(stated.rank_columns == columns,
            "the design has " + counted(stated.rank_columns, "column", "columns"),
@@ -164,6 +164,7 @@ void claim_rank(const Statement& stated, const Found& found, ClaimList& list) {
                " together are the columns");
   const bool independent = stated.certificate && claim_certificate(stated, found, list);
   claim_lower_bound(stated, independent ? stated.certificate->columns.size() : 0, list);
+  return independent;
 }
 
 }  // namespace gramproof::recheck

@@ -27,9 +27,11 @@ class ClaimList {
 };
 
 void claim_rows(const Statement& stated, const Found& found, ClaimList& list);
-void claim_rank(const Statement& stated, const Found& found, ClaimList& list);
+/// Whether the certificate's columns are shown to be independent.
+bool claim_rank(const Statement& stated, const Found& found, ClaimList& list);
 void claim_relations(const Statement& stated, const Found& found, ClaimList& list);
-void claim_choice(const Statement& stated, ClaimList& list);
+/// `certified`: what claim_rank() gave.
+void claim_choice(const Statement& stated, bool certified, ClaimList& list);
 void say_what_was_not_checked(const Statement& stated, ClaimList& list);
 
 }  // namespace gramproof::recheck

@@ -166,20 +166,37 @@ bool places_of(const Statement& stated, const std::vector<std::string>& names,
   return true;
 }
 
+/// All columns kept whose values are rational are among the certificate's.
+bool kept_is_certified(const Statement& stated) {
+  if (!stated.certificate) return false;
+  const auto& columns = stated.certificate->columns;
+  const std::set<std::size_t> certified(columns.begin(), columns.end());
+  std::set<std::size_t> kept;
+  return places_of(stated, stated.kept, kept) &&
+         std::all_of(kept.begin(), kept.end(), [&](std::size_t column) {
+           return !stated.columns[column].rational() || certified.contains(column);
+         });
+}
+
 /// With a basis N of the null space, the columns kept are independent if and only if N restricted
 /// to those left out has full row rank: else some combination of its rows holds among the kept
-/// alone.
-void claim_independence(const Statement& stated, bool parts, const std::set<std::size_t>& left_out,
-                        ClaimList& list) {
+/// alone. Where N is not listed in full, the certificate may show it.
+void claim_independence(const Statement& stated, bool certified,
+                        const std::set<std::size_t>& left_out, ClaimList& list) {
   const bool all_rational =
       std::all_of(stated.columns.begin(), stated.columns.end(),
                   [](const StatedColumn& column) { return column.rational(); });
-  const std::string claim =
-      std::string("the columns kept") + (all_rational ? "" : " without log, sqrt, exp or asinh") +
-      " are independent" + (left_out.size() == stated.nullity ? ", and give those left out" : "");
-  if (stated.omitted > 0) return list.not_checked(claim + ", since relations are omitted");
+  std::string claim = std::string("the columns kept") +
+                      (all_rational ? "" : " without log, sqrt, exp or asinh") + " are independent";
+  if (stated.omitted > 0) {
+    if (!certified || !kept_is_certified(stated))
+      return list.not_checked(claim + ", since relations are omitted");
+    list.add_on_rows(true, claim);
+    return;
+  }
+  if (left_out.size() == stated.nullity) claim += ", and give those left out";
   const auto rows = coefficients(stated, {left_out.begin(), left_out.end()});
-  list.add_on_rows(parts && rows.size() == stated.nullity && rank_of(rows) == rows.size(), claim);
+  list.add_on_rows(rows.size() == stated.nullity && rank_of(rows) == rows.size(), claim);
 }
 
 }  // namespace
@@ -193,7 +210,7 @@ void claim_relations(const Statement& stated, const Found& found, ClaimList& lis
   claim_upper_bound(stated, hold, list);
 }
 
-void claim_choice(const Statement& stated, ClaimList& list) {
+void claim_choice(const Statement& stated, bool certified, ClaimList& list) {
   std::set<std::size_t> both;
   const bool parts = places_of(stated, stated.kept, both) &&
                      places_of(stated, stated.left_out, both) &&
@@ -205,7 +222,7 @@ void claim_choice(const Statement& stated, ClaimList& list) {
                (stated.numerical == stated.rank ? "the rank" : "the rank within rounding"));
   std::set<std::size_t> left_out;
   places_of(stated, stated.left_out, left_out);
-  claim_independence(stated, parts, left_out, list);
+  claim_independence(stated, certified, left_out, list);
   claim_lost(stated, list);
   const bool fails = stated.identified == "fail", singular = stated.overall == "singular";
   list.add(fails == (stated.nullity > 0) && singular == fails,

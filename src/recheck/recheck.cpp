@@ -16,9 +16,9 @@ Result<std::vector<Claim>> recheck(const std::string& document, const std::strin
   if (!found) return found.error();
   ClaimList list(found.value().unsettled == 0);
   claim_rows(stated.value(), found.value(), list);
-  claim_rank(stated.value(), found.value(), list);
+  const bool certified = claim_rank(stated.value(), found.value(), list);
   claim_relations(stated.value(), found.value(), list);
-  claim_choice(stated.value(), list);
+  claim_choice(stated.value(), certified, list);
   say_what_was_not_checked(stated.value(), list);
   return std::move(list.claims());
 }
