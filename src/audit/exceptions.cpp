@@ -1,6 +1,7 @@
 #include "audit/exceptions.hpp"
 
 #include <algorithm>
+#include <optional>
 #include <set>
 
 #include "audit/rare_levels.hpp"
@@ -59,49 +60,70 @@ bool uses_set(const design::DesignColumn& column, int set) {
                      [set](const design::LevelUse& use) { return use.set == set; });
 }
 
-/// Rows with a level of the set that no column of the design carries.
-std::uint64_t rows_without_column(const ExceptionSearch& search, std::size_t set) {
+/// Levels of the set that no column of the design carries.
+std::vector<std::size_t> levels_without_column(const ExceptionSearch& search, std::size_t set) {
   std::set<int> carried;
   for (const design::DesignColumn& column : search.design.columns) {
     for (const design::LevelUse& use : column.levels) {
       if (use.set == static_cast<int>(set)) carried.insert(use.level);
     }
   }
-  std::uint64_t rows = 0;
-  const std::vector<std::uint64_t>& counts = search.digest.level_counts[set];
-  for (std::size_t level = 0; level < counts.size(); ++level) {
-    if (!carried.contains(static_cast<int>(level))) rows += counts[level];
+  std::vector<std::size_t> levels;
+  for (std::size_t level = 0; level < search.digest.level_counts[set].size(); ++level) {
+    if (!carried.contains(static_cast<int>(level))) levels.push_back(level);
   }
-  return rows;
+  return levels;
 }
 
-/// A column against its products with the levels of a set whose level left out is rare: that level
-/// is told of instead.
-bool is_complement_of_levels(const ExceptionSearch& search, const NullVector& vector,
-                             const std::vector<int>& columns) {
+/// A column that is the sum of its products with the levels of one set, but for the rows of the
+/// level left out.
+struct Complement {
+  int column = -1;
+  std::size_t set = 0;
+};
+
+std::optional<Complement> complement_of_levels(const ExceptionSearch& search,
+                                               const NullVector& vector,
+                                               const std::vector<int>& columns) {
   for (std::size_t set = 0; set < search.design.level_sets.size(); ++set) {
-    std::vector<mpz_class> with, without;
+    std::vector<int> with, without;
     for (const int j : columns) {
-      const auto at = static_cast<std::size_t>(j);
-      (uses_set(search.design.columns[at], static_cast<int>(set)) ? with : without)
-          .push_back(vector[at]);
+      const auto& column = search.design.columns[static_cast<std::size_t>(j)];
+      (uses_set(column, static_cast<int>(set)) ? with : without).push_back(j);
     }
     if (without.size() != 1 || with.empty()) continue;
-    const bool same = std::all_of(with.begin(), with.end(),
-                                  [&](const mpz_class& v) { return v == -without.front(); });
-    if (same && rows_without_column(search, set) < rare_below) return true;
+    const mpz_class& whole = vector[static_cast<std::size_t>(without.front())];
+    const bool same = std::all_of(with.begin(), with.end(), [&](int j) {
+      return vector[static_cast<std::size_t>(j)] == -whole;
+    });
+    if (same) return Complement{without.front(), set};
   }
-  return false;
+  return std::nullopt;
 }
 
-bool is_worth_reporting(const ExceptionSearch& search, const NullVector& vector,
-                        const scan::TestedVector& tested) {
-  if (tested.violating == 0 || tested.violating > most_violating(search.digest.rows_used))
-    return false;
+/// The cell as a rare level; none where the level left out is rare altogether and told of already.
+std::optional<RareLevel> rare_cell(const ExceptionSearch& search, const Complement& complement,
+                                   const std::vector<int>& columns, std::uint64_t rows) {
+  const std::vector<std::size_t> levels = levels_without_column(search, complement.set);
+  std::uint64_t in_all = 0;
+  for (const std::size_t level : levels)
+    in_all += search.digest.level_counts[complement.set][level];
+  if (in_all < rare_below) return std::nullopt;
+  const auto column = static_cast<std::size_t>(search.design.level_sets[complement.set].column);
+  const table::ColumnFacts& facts = search.schema.columns[column];
+  std::string label = search.design.columns[static_cast<std::size_t>(complement.column)].label;
+  label += levels.size() == 1
+               ? " * [" + facts.name + " = " + facts.levels[levels.front()].text + "]"
+               : " in the levels of " + facts.name + " without a column";
+  return RareLevel{label, -1, rows, columns};
+}
+
+bool is_relation(const ExceptionSearch& search, const NullVector& vector,
+                 const scan::TestedVector& tested) {
+  if (tested.violating == 0 || tested.violating > most_violating(tested.speaking)) return false;
   const std::vector<int> columns = relating_columns(search, vector, tested.violating);
-  if (columns.size() < 2 || tested.holding < 10 * columns.size()) return false;
-  return !is_complement_of_columns(search, vector, columns, tested) &&
-         !is_complement_of_levels(search, vector, columns);
+  if (columns.size() < 2 || tested.speaking - tested.violating < 10 * columns.size()) return false;
+  return !is_complement_of_columns(search, vector, columns, tested);
 }
 
 std::vector<NullVector> resting_on_one_row(const ExceptionSearch& search) {
@@ -250,7 +272,16 @@ Result<Exceptions> relations_but_for_rows(const ExceptionSearch& search, Prover&
   if (!tested) return tested.error();
   std::vector<std::size_t> worth;
   for (std::size_t i = 0; i < tried.size(); ++i) {
-    if (is_worth_reporting(search, tried[i], tested.value()[i])) worth.push_back(i);
+    const scan::TestedVector& test = tested.value()[i];
+    if (!is_relation(search, tried[i], test)) continue;
+    const std::vector<int> columns = relating_columns(search, tried[i], test.violating);
+    const auto complement = complement_of_levels(search, tried[i], columns);
+    if (!complement || test.violating >= rare_below) {
+      worth.push_back(i);
+      continue;
+    }
+    if (auto cell = rare_cell(search, *complement, columns, test.violating))
+      result.rare_cells.push_back(std::move(*cell));
   }
   std::stable_sort(worth.begin(), worth.end(), [&](std::size_t a, std::size_t b) {
     return std::pair(tested.value()[a].violating, columns_in(tried[a])) <

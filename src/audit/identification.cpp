@@ -142,6 +142,7 @@ Result<Identification> identify(const design::Design& design, const table::Schem
   if (!exceptions) return exceptions.error();
   for (RelationFinding& finding : exceptions.value().relations)
     found.relations.push_back(std::move(finding));
+  found.rare_cells = std::move(exceptions.value().rare_cells);
   found.chance_of_a_miss = exceptions.value().chance_of_a_miss;
   found.passes = prover.passes();
   return found;

@@ -34,6 +34,7 @@ struct Identification {
   bool too_few_rows = false;  ///< columns that are not exact had to be left out for want of rows
   bool constant_in_span = false;
   std::vector<int> constant_support;  ///< design columns whose exact combination is the constant
+  std::vector<RareLevel> rare_cells;  ///< see Exceptions
   double chance_of_a_miss = 0;        ///< see Exceptions
   int passes = 0;                     ///< further passes over the data
 };

@@ -48,7 +48,7 @@ int digits_worth_writing(double coefficient, double error) {
 }
 
 struct Refit {
-  Vector coefficients;
+  Vector coefficients, errors;
   std::vector<int> digits;  ///< significant digits worth writing of each coefficient
 };
 
@@ -63,13 +63,13 @@ Refit refit(const factor::Factor& factor, const std::vector<int>& columns) {
   result.coefficients =
       triangle.triangularView<Eigen::Upper>().solve(own.r.col(others).head(others));
   const double freedom = std::max(1.0, static_cast<double>(own.rows - others));
-  const Vector errors = std::abs(own.r(others, others)) / std::sqrt(freedom) *
-                        factor::triangular_inverse(triangle).rowwise().norm();
+  result.errors = std::abs(own.r(others, others)) / std::sqrt(freedom) *
+                  factor::triangular_inverse(triangle).rowwise().norm();
   for (Index j = 0; j < others; ++j) {
     const int exponent = own.exponents.back() - own.exponents[static_cast<std::size_t>(j)];
     result.coefficients[j] = std::ldexp(result.coefficients[j], exponent);
-    result.digits.push_back(
-        digits_worth_writing(result.coefficients[j], std::ldexp(errors[j], exponent)));
+    result.errors[j] = std::ldexp(result.errors[j], exponent);
+    result.digits.push_back(digits_worth_writing(result.coefficients[j], result.errors[j]));
   }
   return result;
 }
@@ -141,8 +141,10 @@ RelationFinding finding_of(const factor::Factor& factor, const design::Design& d
   finding.text = design.columns[static_cast<std::size_t>(columns.front())].label + " \u2248 " +
                  right_side(design, columns, refitted);
   finding.terms.push_back({columns.front(), "", 1});
+  finding.errors.push_back(0);
   for (std::size_t i = 1; i < columns.size(); ++i) {
     finding.terms.push_back({columns[i], "", -refitted.coefficients[static_cast<Index>(i) - 1]});
+    finding.errors.push_back(refitted.errors[static_cast<Index>(i) - 1]);
   }
   finding.cause_kind = "near";
   finding.cause_text = cause_of(design, columns);

@@ -26,10 +26,19 @@ Result<std::vector<scan::TestedVector>> Prover::test(
   return test_on_all_rows_(vectors);
 }
 
+/// Trivially so where there is no vector.
+bool Prover::is_proved_by_fold(const std::vector<exact::NullVector>& vectors) const {
+  const scan::SpanProof& proof = digest_.proof;
+  return std::all_of(vectors.begin(), vectors.end(), [&](const exact::NullVector& vector) {
+    return proof.sample_spans &&
+           (proof.all_hold || exact::is_decided_by_prime(vector, proof.bounds));
+  });
+}
+
 Result<exact::SampleRank> Prover::rank_of(const std::vector<int>& order) {
   while (true) {
     exact::SampleRank rank = exact::rank_of_sample(design_, digest_.sample, order);
-    if (rank.null_vectors.empty() || sample_is_everything()) return rank;
+    if (sample_is_everything() || is_proved_by_fold(rank.null_vectors)) return rank;
     Result<std::vector<scan::TestedVector>> tested = test(rank.null_vectors);
     if (!tested) return tested.error();
     std::size_t joined = 0;

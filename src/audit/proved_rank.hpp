@@ -12,8 +12,8 @@
 
 namespace gramproof::audit {
 
-/// Tests vectors on every used row: on the sample where it holds them all, else by a further pass,
-/// which is counted.
+/// Tests vectors on every used row: on the sample where it holds them all or the fold has proved
+/// that it spans them, else by a further pass, which is counted.
 class Prover {
  public:
   Prover(const design::Design& design, scan::Digest& digest, const RowTester& test_on_all_rows)
@@ -32,6 +32,8 @@ class Prover {
   [[nodiscard]] bool sample_is_everything() const {
     return digest_.sample.rows == digest_.rows_used;
   }
+
+  [[nodiscard]] bool is_proved_by_fold(const std::vector<exact::NullVector>& vectors) const;
 
   const design::Design& design_;
   scan::Digest& digest_;

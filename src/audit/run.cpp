@@ -9,6 +9,7 @@
 #include "audit/figures.hpp"
 #include "audit/identification.hpp"
 #include "audit/rare_levels.hpp"
+#include "audit/recorded_relations.hpp"
 #include "audit/rounding_relations.hpp"
 #include "audit/verdict.hpp"
 #include "base/text.hpp"
@@ -323,36 +324,40 @@ Result<Audit> run(table::Source& source, const Request& request) {
   if (!given) return given.error();
   std::vector<std::string> file_names;
   for (const table::SourceFile& file : source.files()) file_names.push_back(file.name);
-  const scan::PassOptions pass{request.threads,
-                               progress_of(request, "proving relations on every row")};
-  const RowTester tester = [&](const std::vector<exact::NullVector>& vectors) {
-    return scan::test_on_all_rows(source, bound.schema, bound.settled.design, vectors, pass);
-  };
-  Result<Identification> found =
-      identify(bound.settled.design, bound.schema, file_names, bound.digest, tester);
-  if (!found) return found.error();
-  EveryRow every_row(bound.settled.design, bound.schema, file_names, bound.digest,
-                     [&](const scan::Examiner& examiner) {
-                       return scan::examine_all_rows(source, bound.schema, bound.settled.design,
-                                                     examiner, pass);
-                     });
-  if (Result<void> done = judge_rounding(every_row, found.value()); !done) return done.error();
   Audit audit;
   audit.options = request.options;
   audit.solver = request.solver;
   audit.schema = std::move(bound.schema);
   audit.design = std::move(bound.settled.design);
   audit.focused = std::move(bound.focused);
+  const scan::PassOptions pass{request.threads,
+                               progress_of(request, "proving relations on every row")};
+  const RowTester tester = [&](const std::vector<exact::NullVector>& vectors) {
+    return scan::test_on_all_rows(source, audit.schema, audit.design, vectors, pass);
+  };
+  Result<Identification> found =
+      identify(audit.design, audit.schema, file_names, bound.digest, tester);
+  if (!found) return found.error();
+  EveryRow every_row(
+      audit.design, audit.schema, file_names, bound.digest, [&](const scan::Examiner& examiner) {
+        return scan::examine_all_rows(source, audit.schema, audit.design, examiner, pass);
+      });
+  if (Result<void> done = judge_rounding(every_row, found.value()); !done) return done.error();
   fill_source(source, audit);
   fill_from_digest(bound.digest, audit);
   const std::vector<int> constant_support = found.value().constant_support;
   const std::vector<int> lost = found.value().coefficients_lost;
   const bool too_few_rows = found.value().too_few_rows;
   const double chance_of_a_miss = found.value().chance_of_a_miss;
+  const std::vector<RareLevel> rare_cells = found.value().rare_cells;
   fill_identification(std::move(found.value()), audit);
   audit.rare_levels = rare_levels(audit.design, audit.schema, bound.digest, bound.settled.left_out,
                                   audit.centred_by != CentredBy::none);
+  audit.rare_levels.insert(audit.rare_levels.end(), rare_cells.begin(), rare_cells.end());
   fill_figures(bound.digest, constant_support, given.value(), audit);
+  const int passes_before = every_row.passes();
+  if (Result<void> done = judge_recorded_precision(every_row, audit); !done) return done.error();
+  audit.passes += every_row.passes() - passes_before;
   spare_protected(audit);
   if (Result<void> done = fill_contrasts(request, too_few_rows, bound.digest, audit); !done)
     return done.error();

@@ -25,6 +25,8 @@ constexpr double most_products = 3e8;
 /// and a few spare rows save most of that.
 constexpr std::size_t spare_rows = 5;
 constexpr std::size_t most_rounds = 30;
+/// Violations that are allowed however few rows there are (methods: 2).
+constexpr std::size_t very_few = 5;
 constexpr std::size_t most_candidates = 100;
 
 /// Positions in the sample of the rows with the smallest hash.
@@ -77,23 +79,32 @@ class Searcher {
   }
 
  private:
-  /// Draws one set and remembers what is violated in few rows. Returns how many rows it took.
+  /// Draws one set and remembers what is violated in few rows; then lets it grow until only what is
+  /// violated in very few is left: beside a column that is zero in all but one row in a hundred, a
+  /// relation among such columns does not show before. Returns how many rows it took at first.
   std::size_t try_set(std::size_t trial) {
     const std::vector<std::size_t> order = shuffled(trial);
     std::vector<std::size_t> chosen(
         order.begin(), order.begin() + static_cast<std::ptrdiff_t>(width_ + spare_rows));
+    grow(chosen, order, limit_);
+    const std::size_t drawn = chosen.size();
+    if (very_few < limit_) grow(chosen, order, very_few);
+    return drawn;
+  }
+
+  /// Adds rows until every null vector left is violated in at most `limit` rows.
+  void grow(std::vector<std::size_t>& chosen, const std::vector<std::size_t>& order,
+            std::size_t limit) {
     for (std::size_t round = 0; round < most_rounds; ++round) {
       const Elimination eliminated = eliminate_rows(chosen);
-      if (eliminated.free.empty()) break;
       std::vector<SparseViolations> few;
-      const std::set<std::size_t> more = judge(eliminated, order, few);
+      const std::set<std::size_t> more = judge(eliminated, order, limit, few);
       if (more.empty() || round + 1 == most_rounds) {
         remember(std::move(few));
-        break;
+        return;
       }
       chosen.insert(chosen.end(), more.begin(), more.end());
     }
-    return chosen.size();
   }
 
   [[nodiscard]] std::vector<std::size_t> shuffled(std::size_t trial) const {
@@ -121,12 +132,12 @@ class Searcher {
 
   /// Rows that rule out the null vectors violated too often; the others go to `few`.
   std::set<std::size_t> judge(const Elimination& eliminated, const std::vector<std::size_t>& order,
-                              std::vector<SparseViolations>& few) {
+                              std::size_t limit, std::vector<SparseViolations>& few) {
     std::set<std::size_t> more;
     for (std::size_t f = 0; f < eliminated.free.size(); ++f) {
       SparseViolations candidate = null_vector(eliminated, f);
-      find_violations(candidate, order);
-      if (candidate.violations.size() <= limit_) {
+      find_violations(candidate, order, limit);
+      if (candidate.violations.size() <= limit) {
         few.push_back(std::move(candidate));
         continue;
       }
@@ -150,10 +161,11 @@ class Searcher {
   }
 
   /// Stops beyond the limit: a vector violated so often is none that is looked for.
-  void find_violations(SparseViolations& vector, const std::vector<std::size_t>& order) {
+  void find_violations(SparseViolations& vector, const std::vector<std::size_t>& order,
+                       std::size_t limit) {
     std::size_t looked_at = 0;
     for (const std::size_t i : order) {
-      if (vector.violations.size() > limit_) break;
+      if (vector.violations.size() > limit) break;
       ++looked_at;
       DotProduct sum;
       for (const auto& [column, c] : vector.coefficients) sum.add(c, values_[i * width_ + column]);

@@ -64,6 +64,7 @@ struct SampleRank {
 /// Result of testing one vector on rows.
 struct RelationTest {
   std::uint64_t holding = 0, violating = 0;
+  std::uint64_t speaking = 0;  ///< rows in which some term is not 0: elsewhere it holds idly
   struct Violation {
     std::size_t row_in_piece;
     std::uint64_t row;

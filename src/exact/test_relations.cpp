@@ -94,6 +94,16 @@ std::vector<Word> sums_of(const Plan& plan, std::size_t rows) {
   return sums;
 }
 
+/// Rows in which some term of the plan is not 0.
+std::uint64_t speaking_rows(const Plan& plan, std::size_t rows) {
+  if (plan.offset != 0) return rows;
+  std::vector<std::int64_t> bits(rows, 0);
+  for (const auto& [factor, column] : plan.terms) {
+    for (std::size_t i = 0; i < rows; ++i) bits[i] |= column->mantissa[i];
+  }
+  return rows - static_cast<std::uint64_t>(std::count(bits.begin(), bits.end(), 0));
+}
+
 /// Counts a violation and keeps it if it is among the first.
 void record(RelationTest& test, std::size_t row_in_piece, std::uint64_t row, mpq_class residual,
             std::size_t most) {
@@ -108,6 +118,7 @@ void count_in_words(const Plan& plan, const table::Piece& piece, const Rows& row
                     RelationTest& test) {
   const std::vector<Word> sums = sums_of<Word>(plan, rows.size());
   const Integer denominator = power_of_ten(plan.decimals);
+  test.speaking += speaking_rows(plan, rows.size());
   Word largest = 0;
   for (std::size_t i = 0; i < rows.size(); ++i) {
     if (sums[i] == 0) {
@@ -128,20 +139,26 @@ void count_in_words(const Plan& plan, const table::Piece& piece, const Rows& row
   if (size > test.largest_residual) test.largest_residual = size;
 }
 
+struct ExactSum {
+  mpq_class value = 0;
+  bool speaks = false;  ///< some term is not 0
+};
+
 /// v . x in one row; none where a value is undefined.
-std::optional<mpq_class> exact_sum(const NullVector& vector,
-                                   const std::vector<std::size_t>& support,
-                                   const design::Design& design, const table::Piece& piece,
-                                   std::size_t row) {
-  mpq_class sum = 0;
+std::optional<ExactSum> exact_sum(const NullVector& vector, const std::vector<std::size_t>& support,
+                                  const design::Design& design, const table::Piece& piece,
+                                  std::size_t row) {
+  ExactSum sum;
   for (const std::size_t j : support) {
     if (j == design.columns.size() || design.columns[j].constant) {
-      sum += vector[j];
+      sum.value += vector[j];
+      sum.speaks = true;
       continue;
     }
     const auto value = design::exact_value(*design.columns[j].definition, piece, row);
     if (!value) return std::nullopt;
-    sum += vector[j] * *value;
+    sum.value += vector[j] * *value;
+    sum.speaks |= *value != 0;
   }
   return sum;
 }
@@ -151,13 +168,14 @@ void count_in_rationals(const NullVector& vector, const design::Design& design,
                         RelationTest& test) {
   const std::vector<std::size_t> support = support_of(vector);
   for (const std::size_t row : rows) {
-    std::optional<mpq_class> sum = exact_sum(vector, support, design, piece, row);
+    std::optional<ExactSum> sum = exact_sum(vector, support, design, piece, row);
     // A row with an undefined value is no row of the design, as in residues().
     if (!sum) continue;
-    if (*sum == 0) {
+    test.speaking += sum->speaks ? 1 : 0;
+    if (sum->value == 0) {
       ++test.holding;
     } else {
-      record(test, row, piece.row[row], std::move(*sum), most);
+      record(test, row, piece.row[row], std::move(sum->value), most);
     }
   }
 }

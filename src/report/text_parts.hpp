@@ -50,8 +50,10 @@ void write_left_out(const audit::Audit& audit, Page& page);                   //
 void write_relations_within_rounding(const audit::Audit& audit, Page& page);  // text_rounding.cpp
 void write_doubles(const audit::Audit& audit, Page& page);                    // text_rounding.cpp
 void write_relations_with_exceptions(const audit::Audit& audit, Page& page);  // text_relations.cpp
-void write_competing(const audit::Audit& audit, Page& page);                  // text_competing.cpp
-void write_digits(const audit::Audit& audit, Page& page);                     // text_competing.cpp
+void write_relations_within_recorded_precision(const audit::Audit& audit,
+                                               Page& page);      // text_recorded.cpp
+void write_competing(const audit::Audit& audit, Page& page);     // text_competing.cpp
+void write_digits(const audit::Audit& audit, Page& page);        // text_competing.cpp
 void write_coefficients(const audit::Audit& audit, Page& page);  // text_coefficients.cpp
 void write_contrasts(const audit::Audit& audit, Page& page);     // text_coefficients.cpp
 void write_rare_levels(const audit::Audit& audit, Page& page);   // text_coefficients.cpp

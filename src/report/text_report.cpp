@@ -67,6 +67,7 @@ std::string text_report(const audit::Audit& audit, const TextOptions& options) {
   write_doubles(audit, page);
   write_relations_with_exceptions(audit, page);
   write_rare_levels(audit, page);
+  write_relations_within_recorded_precision(audit, page);
   write_competing(audit, page);
   write_coefficients(audit, page);
   write_contrasts(audit, page);

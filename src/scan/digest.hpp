@@ -9,6 +9,7 @@
 #include "base/numeric.hpp"
 #include "design/bind.hpp"
 #include "design/rows.hpp"
+#include "exact/residual_span.hpp"
 #include "factor/factor.hpp"
 #include "table/piece.hpp"
 
@@ -33,6 +34,16 @@ struct SourceNoise {
   int cell_exponent = 0;
 };
 
+/// What the fold has proved about the null space of the sample (methods: 2, item 2).
+struct SpanProof {
+  /// The sample's rows span those of all rows, modulo the prime, over the exact columns and ones.
+  bool sample_spans = false;
+  /// Then every null vector of the sample vanishes on every row: exactly if `all_hold`, else modulo
+  /// the prime, which decides it for vectors within the bounds (exact::is_decided_by_prime).
+  bool all_hold = false;
+  std::vector<exact::EntryBound> bounds;  ///< a design column
+};
+
 struct Digest {
   std::uint64_t rows_read = 0;
   std::uint64_t rows_used = 0;
@@ -47,7 +58,9 @@ struct Digest {
   /// A deterministic sample of used rows: those with the smallest hash of their number, and for
   /// each design column the first two rows where it is not zero. Ascending row number, each row
   /// once.
+  /// Besides, where the fold could prove the null space, the rows that decide it.
   table::Piece sample;
+  SpanProof proof;
   /// Sum over used rows of hash(row) * x_row modulo exact::prime, a design column each (0 for
   /// columns that are not exact), the ones column last: for the rows without which X is singular.
   std::vector<std::uint64_t> random_combination;

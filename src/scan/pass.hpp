@@ -36,6 +36,7 @@ inline constexpr std::size_t sample_rows = 4096;
 /// What a pass says about one integer vector.
 struct TestedVector {
   std::uint64_t holding = 0, violating = 0;
+  std::uint64_t speaking = 0;        ///< rows in which some term is not 0
   mpq_class largest_residual = 0;    ///< absolute value
   table::Piece violators;            ///< the first `most_violators` violating rows
   std::vector<mpq_class> residuals;  ///< one a row of `violators`

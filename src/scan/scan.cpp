@@ -1,8 +1,10 @@
 #include <algorithm>
+#include <optional>
 #include <utility>
 
 #include "base/ordered_work.hpp"
 #include "exact/modular.hpp"
+#include "scan/fold_proof.hpp"
 #include "scan/leaf.hpp"
 #include "scan/pass.hpp"
 
@@ -92,6 +94,43 @@ std::vector<std::uint64_t> selected(const std::vector<std::uint64_t>& values,
   return result;
 }
 
+struct ProvedLeaf {
+  Leaf leaf;
+  PieceProof proof;
+};
+
+/// Lets the first piece be looked at before the pass hands it out.
+class FirstPiece {
+ public:
+  explicit FirstPiece(table::Source& source) : source_(source) {}
+
+  [[nodiscard]] Result<std::optional<table::RawPiece>> peek() {
+    Result<std::optional<table::RawPiece>> first = source_.next();
+    if (first) held_ = first.value();
+    return first;
+  }
+  [[nodiscard]] Result<std::optional<table::RawPiece>> next() {
+    if (!held_) return source_.next();
+    return std::exchange(held_, std::nullopt);
+  }
+
+ private:
+  table::Source& source_;
+  std::optional<table::RawPiece> held_;
+};
+
+/// Where one piece holds all rows, the sample is everything and nothing is left to prove.
+Result<FoldProof> start_proof(FirstPiece& first, const table::Schema& schema,
+                              const design::Design& design, const PieceExpander& expander) {
+  if (schema.rows <= table::rows_a_piece) return FoldProof();
+  Result<std::optional<table::RawPiece>> raw = first.peek();
+  if (!raw) return raw.error();
+  if (!raw.value()) return FoldProof();
+  Result<ExpandedPiece> expanded = expander.expand(*raw.value());
+  if (!expanded) return expanded.error();
+  return FoldProof(design, expanded.value());
+}
+
 }  // namespace
 
 Result<Digest> scan(table::Source& source, const table::Schema& schema,
@@ -101,21 +140,31 @@ Result<Digest> scan(table::Source& source, const table::Schema& schema,
   const NoisePlan plan(design, schema);
   Sampler sampler(sample_rows, design.columns.size());
   Collector collector(design, schema);
-  const auto work = [&](table::RawPiece raw) -> Result<Leaf> {
+  FirstPiece first(source);
+  Result<FoldProof> started = start_proof(first, schema, design, expander);
+  if (!started) return started.error();
+  FoldProof& proof = started.value();
+  const auto work = [&](table::RawPiece raw) -> Result<ProvedLeaf> {
     Result<ExpandedPiece> expanded = expander.expand(raw);
     if (!expanded) return expanded.error();
-    return make_leaf(design, schema, plan, sampler, std::move(expanded.value()));
+    ProvedLeaf result;
+    result.proof = proof.examine(design, expanded.value());
+    result.leaf = make_leaf(design, schema, plan, sampler, std::move(expanded.value()));
+    return result;
   };
-  const auto consume = [&](Leaf leaf) -> Result<void> {
-    sampler.take(std::move(leaf.candidates));
-    collector.take(std::move(leaf));
+  const auto consume = [&](ProvedLeaf part) -> Result<void> {
+    sampler.take(std::move(part.leaf.candidates));
+    collector.take(std::move(part.leaf));
+    proof.take(std::move(part.proof));
     if (options.on_progress) options.on_progress(source.progress());
     return {};
   };
-  Result<void> run = run_ordered<table::RawPiece, Leaf>(
-      options.threads, [&] { return source.next(); }, work, consume);
+  Result<void> run = run_ordered<table::RawPiece, ProvedLeaf>(
+      options.threads, [&] { return first.next(); }, work, consume);
   if (!run) return run.error();
-  return collector.finish(sampler.finish());
+  Digest digest = collector.finish(sampler.finish());
+  proof.finish(digest);
+  return digest;
 }
 
 Digest settle(const Digest& digest, const design::Settled& settled) {
@@ -148,6 +197,12 @@ Digest settle(const Digest& digest, const design::Settled& settled) {
     result.never_together.push_back(std::move(row));
   }
   result.sample = digest.sample;
+  result.proof = digest.proof;
+  result.proof.bounds.clear();
+  if (!digest.proof.bounds.empty()) {
+    for (const int column : from)
+      result.proof.bounds.push_back(digest.proof.bounds[static_cast<std::size_t>(column)]);
+  }
   result.random_combination = selected(digest.random_combination, with_ones);
   return result;
 }

@@ -31,6 +31,7 @@ PieceTest test_piece(const design::Design& design, const table::Piece& piece,
 void take(TestedVector& total, const exact::RelationTest& test, const table::Piece& violators) {
   total.holding += test.holding;
   total.violating += test.violating;
+  total.speaking += test.speaking;
   total.largest_residual = std::max(total.largest_residual, test.largest_residual);
   if (total.residuals.size() >= most_violators || test.first.empty()) return;
   const std::size_t room = most_violators - total.residuals.size();

@@ -22,4 +22,11 @@ void try_span(std::uint64_t seed, Tally& tally);
 /// shown no more non-zero coefficients in all than the planted one?
 void try_length(std::uint64_t seed, Tally& tally);
 
+/// A relation that one to five rows break (n 100 to 5,000, k to 60): is it the only one that the
+/// audit tells, with all the rows that break it?
+void try_violators(std::uint64_t seed, Tally& tally);
+
+/// No relation: does the audit tell of none?
+void try_clean(std::uint64_t seed, Tally& tally);
+
 }  // namespace gramproof::test
