@@ -33,13 +33,16 @@ std::vector<int> inexact_kept(const design::Design& design, const Identification
   return columns;
 }
 
-/// Places in the sample of rows by their numbers.
+/// Places in the sample of those of the rows that it holds.
 std::vector<std::size_t> places(const table::Piece& sample,
                                 const std::vector<std::uint64_t>& numbers) {
   std::unordered_map<std::uint64_t, std::size_t> place;
   for (std::size_t i = 0; i < sample.rows; ++i) place.emplace(sample.row[i], i);
   std::vector<std::size_t> result;
-  for (const std::uint64_t number : numbers) result.push_back(place.at(number));
+  for (const std::uint64_t number : numbers) {
+    if (const auto found = place.find(number); found != place.end())
+      result.push_back(found->second);
+  }
   return result;
 }
 
@@ -47,10 +50,10 @@ std::vector<scan::PieceAnswer> residuals(const std::vector<exact::RoundingRelati
                                          const exact::Enclosures& enclosures,
                                          const table::Piece& piece, const design::Block& block) {
   std::vector<scan::PieceAnswer> answers(relations.size());
-  for (std::size_t r = 0; r < relations.size(); ++r) {
-    for (std::size_t i = 0; i < block.rows.size(); ++i) {
-      const exact::RoundingResidual residual =
-          exact::residual_of(relations[r], enclosures, piece, block.rows[i]);
+  for (std::size_t i = 0; i < block.rows.size(); ++i) {
+    exact::RowEnclosures row(enclosures, piece, block.rows[i]);
+    for (std::size_t r = 0; r < relations.size(); ++r) {
+      const exact::RoundingResidual residual = exact::residual_of(relations[r], row);
       if (!residual.holds) answers[r].violating.push_back(i);
       answers[r].largest_residual =
           std::max(answers[r].largest_residual, std::exp2(residual.log2_size));

@@ -147,14 +147,14 @@ Reason freedom_reason(const Audit& audit) {
             "{} for {}: no residual degree of freedom is left, so the fit is perfect whatever the "
             "response is, and no standard error can be computed.",
             counted(audit.rows_used, "row", "rows"),
-            counted(audit.rank.rank, "coefficient", "coefficients"))};
+            counted(audit.kept.size(), "coefficient", "coefficients"))};
   }
   return {Grade::caution,
           fmt::format("Only {} left ({} for {}); fewer than 10 is a caution (our own choice).",
                       counted(static_cast<std::uint64_t>(freedom), "residual degree of freedom is",
                               "residual degrees of freedom are"),
                       counted(audit.rows_used, "row", "rows"),
-                      counted(audit.rank.rank, "coefficient", "coefficients"))};
+                      counted(audit.kept.size(), "coefficient", "coefficients"))};
 }
 
 bool involves_read_column(const RelationFinding& relation, const Focus& focus) {

@@ -113,7 +113,8 @@ RelationFinding finding_of(const EveryRow& every_row, const InexactColumns::Rela
   finding.standing = Standing::within_rounding;
   finding.rows_holding = digest.rows_used;
   finding.largest_residual_value = related.largest_residual;
-  finding.largest_residual = fmt::format("{:.1e}", related.largest_residual);
+  finding.largest_residual =
+      related.largest_residual == 0 ? "0" : fmt::format("{:.1e}", related.largest_residual);
   return finding;
 }
 

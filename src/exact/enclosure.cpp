@@ -97,4 +97,11 @@ Interval Enclosures::of(const Expression& expression, const table::Piece& piece,
   return value;
 }
 
+const Interval& RowEnclosures::value(int column, mpfr_prec_t precision) {
+  const std::pair<int, mpfr_prec_t> key{column, precision};
+  const auto known = known_.find(key);
+  if (known != known_.end()) return known->second;
+  return known_.emplace(key, enclosures_.value(column, piece_, row_, precision)).first->second;
+}
+
 }  // namespace gramproof::exact

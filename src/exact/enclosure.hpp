@@ -3,7 +3,9 @@
 #pragma once
 
 #include <cstddef>
+#include <map>
 #include <unordered_set>
+#include <utility>
 
 #include "design/design.hpp"
 #include "exact/interval.hpp"
@@ -31,6 +33,20 @@ class Enclosures {
 
   const design::Design& design_;
   std::unordered_set<const design::Expression*> rational_;  ///< decided by exact_value
+};
+
+/// The enclosures of one row, each made once.
+class RowEnclosures {
+ public:
+  RowEnclosures(const Enclosures& enclosures, const table::Piece& piece, std::size_t row)
+      : enclosures_(enclosures), piece_(piece), row_(row) {}
+  [[nodiscard]] const Interval& value(int column, mpfr_prec_t precision);
+
+ private:
+  const Enclosures& enclosures_;
+  const table::Piece& piece_;
+  std::size_t row_;
+  std::map<std::pair<int, mpfr_prec_t>, Interval> known_;
 };
 
 }  // namespace gramproof::exact

@@ -225,9 +225,35 @@ Interval Interval::rising(Function&& function) const {
   return result;
 }
 
+/// Of a function that rises throughout, evaluated once: f(high) <= f(low) + slope (high - low) with
+/// a bound on the slope between them, which `slope` makes of f(low), rounded upwards.
+template <class Function, class Slope>
+Interval Interval::rising(Function&& function, Slope&& slope) const {
+  Interval result(precision());
+  const bool exact = function(result.low_, low_, MPFR_RNDD) == 0;
+  mpfr_set(result.high_, result.low_, MPFR_RNDU);
+  if (!exact) mpfr_nextabove(result.high_);
+  if (mpfr_equal_p(low_, high_)) return result;
+  Interval rise(precision());
+  mpfr_sub(rise.low_, high_, low_, MPFR_RNDU);
+  slope(rise.high_, result.high_);
+  mpfr_mul(rise.high_, rise.high_, rise.low_, MPFR_RNDU);
+  mpfr_add(result.high_, result.high_, rise.high_, MPFR_RNDU);
+  if (!result.is_bounded()) result.forget();
+  return result;
+}
+
+/// So narrow that a bound on the slope loses next to nothing against a second evaluation.
+bool Interval::is_narrow() const {
+  return is_bounded() && log2_width() < std::min(log2_smallest(), 0.0) - 16;
+}
+
 Interval Interval::log() const {
   if (mpfr_sgn(low_) <= 0) return whole_line(precision());
-  return rising(mpfr_log);
+  if (!is_narrow()) return rising(mpfr_log);
+  // The slope falls from 1 / low.
+  return rising(mpfr_log,
+                [this](mpfr_t bound, const mpfr_t&) { mpfr_ui_div(bound, 1, low_, MPFR_RNDU); });
 }
 
 Interval Interval::sqrt() const {
@@ -238,7 +264,11 @@ Interval Interval::sqrt() const {
 }
 
 Interval Interval::exp() const {
-  return rising(mpfr_exp);
+  if (!is_narrow()) return rising(mpfr_exp);
+  // The slope is at most exp(high) <= 2 exp(low), as high - low < log 2.
+  return rising(mpfr_exp, [](mpfr_t bound, const mpfr_t& above) {
+    mpfr_mul_2ui(bound, above, 1, MPFR_RNDU);
+  });
 }
 
 Interval Interval::asinh() const {

@@ -72,6 +72,9 @@ class Interval {
   void set_product(const Interval& a, const Interval& b);
   template <class Function>
   [[nodiscard]] Interval rising(Function&& function) const;
+  template <class Function, class Slope>
+  [[nodiscard]] Interval rising(Function&& function, Slope&& slope) const;
+  [[nodiscard]] bool is_narrow() const;
 
   mpfr_t low_, high_;
 };

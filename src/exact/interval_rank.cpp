@@ -273,14 +273,13 @@ IntervalRank interval_rank(const IntervalQuestion& question) {
   return result;
 }
 
-RoundingResidual residual_of(const RoundingRelation& relation, const Enclosures& enclosures,
-                             const table::Piece& piece, std::size_t row) {
+RoundingResidual residual_of(const RoundingRelation& relation, RowEnclosures& row) {
   RoundingResidual result;
   for (mpfr_prec_t bits = 2 * lowest_precision; bits <= highest_precision; bits *= 2) {
     Interval sum(bits);
     double largest = -std::numeric_limits<double>::infinity();
     for (const RoundingRelation::Term& term : relation.terms) {
-      Interval part = enclosures.value(term.column, piece, row, bits);
+      Interval part = row.value(term.column, bits);
       part *= Interval(term.coefficient, bits);
       if (part.is_bounded()) largest = std::max(largest, part.log2_largest());
       sum += part;

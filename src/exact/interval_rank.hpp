@@ -52,14 +52,11 @@ struct IntervalRank {
 /// allows about 150 columns; beyond it columns are unsettled.
 [[nodiscard]] IntervalRank interval_rank(const IntervalQuestion& question);
 
-/// log2 of a bound on |sum of the terms| in a row, and whether it is surely more than 60 digits
-/// below the largest term's: {holds, log2 of the bound}.
+/// What the terms of a relation add up to in one row.
 struct RoundingResidual {
-  bool holds = false;
-  double log2_size = 0;
+  bool holds = false;    ///< surely more than 60 digits below the largest term
+  double log2_size = 0;  ///< log2 of a bound on it
 };
-[[nodiscard]] RoundingResidual residual_of(const RoundingRelation& relation,
-                                           const Enclosures& enclosures, const table::Piece& piece,
-                                           std::size_t row);
+[[nodiscard]] RoundingResidual residual_of(const RoundingRelation& relation, RowEnclosures& row);
 
 }  // namespace gramproof::exact

@@ -59,10 +59,13 @@ void write_relations_within_rounding(const audit::Audit& audit, Page& page) {
     page.cut(fmt::format("{}. {}", i + 1, relation.text), most_lines_of_an_equation,
              fmt::format("... ({} in all)", counted(relation.terms.size(), "column", "columns")), 2,
              3);
-    page.paragraph(fmt::format("On all {} the two sides differ by less than {}. {}",
-                               counted(relation.rows_holding, "row", "rows"),
-                               relation.largest_residual, relation.cause_text),
-                   5);
+    const std::string residual = relation.largest_residual_value == 0
+                                     ? "agree to the last bit computed"
+                                     : "differ by less than " + relation.largest_residual;
+    page.paragraph(
+        fmt::format("On all {} the two sides {}. {}", counted(relation.rows_holding, "row", "rows"),
+                    residual, relation.cause_text),
+        5);
     page.paragraph(removable_sentence(audit, relation), 5);
   }
   if (relations.size() == told) return;

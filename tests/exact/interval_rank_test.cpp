@@ -68,7 +68,8 @@ Answer answered(const test::Table& table, const std::string& text) {
   for (const exact::RoundingRelation& relation : found.relations) {
     answer.relations.push_back(text_of(relation, design));
     for (std::size_t i = 0; i < table.piece.rows; ++i) {
-      CHECK(exact::residual_of(relation, enclosures, table.piece, i).holds);
+      exact::RowEnclosures row(enclosures, table.piece, i);
+      CHECK(exact::residual_of(relation, row).holds);
     }
   }
   CHECK(answer.independent + answer.relations.size() + answer.unsettled == inexact.size());

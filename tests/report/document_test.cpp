@@ -224,3 +224,19 @@ TEST_CASE("bytes that are no UTF-8 do not stop the document") {
   const std::string text = report::to_json_text(report::verdict_document(audit, "0.1.0"));
   CHECK(text.find("bad\xEF\xBF\xBD.csv") != std::string::npos);
 }
+
+TEST_CASE("relations within rounding: whole numbers as strings, others as numbers") {
+  const Json document = Json::parse(
+      report::to_json_text(report::verdict_document(sample::within_rounding(), "0.1.0")));
+  const Json& product = document["relations"][0];
+  CHECK(product["standing"] == "within_rounding");
+  CHECK(product["terms"][1] == Json({{"column", "log(length)"}, {"coefficient", "-1"}}));
+  CHECK(product["rows_holding"] == 2400);
+  CHECK(product["largest_residual"] == "4.1e-76");
+  const Json& unit = document["relations"][1];
+  CHECK(unit["terms"][0]["coefficient"].get<double>() == 4.605170185988091);
+  CHECK(document["rank"]["rank"] == 6);
+  CHECK(document["rank"]["numerical"] == 4);
+  CHECK(document["rank"]["rank_of_the_doubles"] == 6);
+  CHECK(document["rank"]["proved"] == false);
+}

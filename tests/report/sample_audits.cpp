@@ -237,7 +237,9 @@ std::vector<Sample> all() {
           {"no_constant", no_constant()},
           {"focus", focus()},
           {"beyond_doubles", beyond_doubles()},
-          {"hostile", hostile()}};
+          {"hostile", hostile()},
+          {"within_rounding", within_rounding()},
+          {"held_as_doubles", held_as_doubles()}};
 }
 
 }  // namespace gramproof::sample
