@@ -9,7 +9,9 @@
 namespace gramproof::command {
 namespace {
 
-const char* const see_help = "`gramproof check --help` lists the options";
+std::string see_help(const std::string& command) {
+  return "`gramproof " + command + " --help` lists the options";
+}
 
 /// The option an argument names, `--json` and `--json=FILE` alike; none for a file or a value.
 const OptionEntry* option_of(const std::string& argument, const std::vector<OptionEntry>& options) {
@@ -20,7 +22,8 @@ const OptionEntry* option_of(const std::string& argument, const std::vector<Opti
   return found == options.end() ? nullptr : &*found;
 }
 
-Error unknown_option(const std::string& argument, const std::vector<OptionEntry>& options) {
+Error unknown_option(const std::string& argument, const std::vector<OptionEntry>& options,
+                     const std::string& command) {
   std::vector<std::string> names;
   for (const OptionEntry& option : options) names.push_back(option.name);
   const std::string written = argument.substr(0, argument.find('='));
@@ -29,7 +32,7 @@ Error unknown_option(const std::string& argument, const std::vector<OptionEntry>
   const std::optional<std::string> near =
       first == std::string::npos ? std::nullopt : nearest_name(written.substr(first), names);
   return {ErrorKind::usage, "", "unknown option " + written,
-          near ? "did you mean --" + *near + "?" : see_help};
+          near ? "did you mean --" + *near + "?" : see_help(command)};
 }
 
 Error value_absent(const OptionEntry& option) {
@@ -116,7 +119,8 @@ std::string Arguments::value(const std::string& option) const {
 }
 
 Result<Arguments> sort_arguments(const std::vector<std::string>& arguments,
-                                 const std::vector<OptionEntry>& options) {
+                                 const std::vector<OptionEntry>& options,
+                                 const std::string& command) {
   Result<std::vector<std::string>> pairs = in_pairs(arguments, options);
   if (!pairs) return pairs.error();
   CLI::App app;
@@ -128,14 +132,14 @@ Result<Arguments> sort_arguments(const std::vector<std::string>& arguments,
   try {
     app.parse(pairs.value());
   } catch (const CLI::ParseError& fault) {
-    return Error{ErrorKind::usage, "", fault.what(), see_help};
+    return Error{ErrorKind::usage, "", fault.what(), see_help(command)};
   }
   bool only_files = false;
   for (const std::string& rest : app.remaining()) {
     if (rest == "--" && !only_files) {
       only_files = true;
     } else if (!only_files && rest.size() > 1 && rest.front() == '-') {
-      return unknown_option(rest, options);
+      return unknown_option(rest, options, command);
     } else {
       sorted.files.push_back(rest);
     }

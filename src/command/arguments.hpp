@@ -23,7 +23,9 @@ struct Arguments {
 /// A value may begin with a dash ('-age + [x = 1]'), but is never the name of an option: `--json
 /// --quiet` is a forgotten value and not a file called --quiet (`--json=--quiet` is). Errors:
 /// unknown options (with the nearest), a value that is absent, empty or too many.
+/// `command` is named where its --help is recommended.
 [[nodiscard]] Result<Arguments> sort_arguments(const std::vector<std::string>& arguments,
-                                               const std::vector<OptionEntry>& options);
+                                               const std::vector<OptionEntry>& options,
+                                               const std::string& command = "check");
 
 }  // namespace gramproof::command

@@ -232,9 +232,11 @@ audit::OptionRecord record_of(const Arguments& given, const CheckOptions& option
 
 }  // namespace
 
-Result<CheckOptions> parse_check(const std::vector<std::string>& arguments) {
+Result<CheckOptions> parse_options(const std::vector<std::string>& arguments,
+                                   const std::vector<OptionEntry>& table,
+                                   const std::string& command) {
   CheckOptions options;
-  Result<Arguments> sorted = sort_arguments(arguments, check_options());
+  Result<Arguments> sorted = sort_arguments(arguments, table, command);
   if (!sorted) return sorted.error();
   const Arguments& given = sorted.value();
   options.files = given.files;
@@ -242,7 +244,8 @@ Result<CheckOptions> parse_check(const std::vector<std::string>& arguments) {
   if (options.help) return options;
   if (options.files.empty()) {
     return Error{ErrorKind::usage, "", "no data file is named",
-                 "gramproof check FILE... ; - is standard input"};
+                 command == "check" ? "gramproof check FILE... ; - is standard input"
+                                    : "`gramproof " + command + " --help` says more"};
   }
   if (Result<void> done = fill_design(given, options.audit.design); !done) return done.error();
   if (Result<void> done = fill_reading(given, options.reading); !done) return done.error();
@@ -251,6 +254,10 @@ Result<CheckOptions> parse_check(const std::vector<std::string>& arguments) {
   if (Result<void> done = fill_output(given, options); !done) return done.error();
   options.audit.options = record_of(given, options);
   return options;
+}
+
+Result<CheckOptions> parse_check(const std::vector<std::string>& arguments) {
+  return parse_options(arguments, check_options(), "check");
 }
 
 }  // namespace gramproof::command

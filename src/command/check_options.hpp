@@ -7,6 +7,7 @@
 
 #include "audit/run.hpp"
 #include "base/result.hpp"
+#include "command/option_table.hpp"
 #include "table/source.hpp"
 
 namespace gramproof::command {
@@ -28,5 +29,11 @@ struct CheckOptions {
 /// Arguments after `check`. Errors: unknown options (with the nearest), missing or impossible
 /// values, no file, a file that cannot be written. --design-file is read here.
 [[nodiscard]] Result<CheckOptions> parse_check(const std::vector<std::string>& arguments);
+
+/// The same for a command that has some of these options; what its table does not list keeps its
+/// default.
+[[nodiscard]] Result<CheckOptions> parse_options(const std::vector<std::string>& arguments,
+                                                 const std::vector<OptionEntry>& table,
+                                                 const std::string& command);
 
 }  // namespace gramproof::command

@@ -12,6 +12,7 @@
 #include "command/output.hpp"
 #include "command/recheck.hpp"
 #include "command/version.hpp"
+#include "command/why.hpp"
 
 namespace {
 
@@ -27,7 +28,7 @@ int print(const std::string& text) {
 
 int unknown_command(const std::string& word) {
   const std::optional<std::string> near =
-      nearest_name(word, {"check", "recheck", "--help", "--version"});
+      nearest_name(word, {"check", "recheck", "why", "--help", "--version"});
   complain({ErrorKind::usage, "", "unknown command \"" + word + "\"",
             near ? "did you mean " + *near + "?"
                  : "gramproof check FILE... ; `gramproof --help` says more"});
@@ -44,6 +45,7 @@ int run(const std::vector<std::string>& arguments) {
   if (word == "--help" || word == "help") return print(general_help());
   if (word == "--version") return print("gramproof " + std::string(program_version) + "\n");
   if (word == "recheck") return command::recheck({arguments.begin() + 1, arguments.end()});
+  if (word == "why") return command::why({arguments.begin() + 1, arguments.end()});
   if (word != "check") return unknown_command(word);
   return check({arguments.begin() + 1, arguments.end()});
 }

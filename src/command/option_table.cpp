@@ -46,10 +46,41 @@ const std::vector<OptionEntry>& check_options() {
   return table;
 }
 
+const std::vector<OptionEntry>& why_options() {
+  static const std::vector<OptionEntry> table = [] {
+    std::vector<OptionEntry> options;
+    for (const OptionEntry& option : check_options()) {
+      // What grades or writes a verdict has nothing to do here.
+      const bool judges = option.name == "json" || option.name == "accept" ||
+                          option.name == "accept-repaired" || option.name == "solver";
+      if (!judges) options.push_back(option);
+    }
+    return options;
+  }();
+  return table;
+}
+
+std::string listed_options(const std::vector<OptionEntry>& options) {
+  std::string text;
+  std::string group;
+  for (const OptionEntry& option : options) {
+    if (option.group != group) {
+      group = option.group;
+      text += "\n" + group + "\n";
+    }
+    const std::string head = "--" + option.name + (option.value.empty() ? "" : " " + option.value);
+    text += fmt::format("  {:<25} {}\n", head, option.text);
+    if (!option.fallback.empty())
+      text += fmt::format("  {:<25} (default: {})\n", "", option.fallback);
+  }
+  return text;
+}
+
 std::string general_help() {
   return "gramproof - can X'X be inverted reliably, and if not, exactly why?\n"
          "\n"
          "  gramproof check FILE... [options]    audit a design against its data\n"
+         "  gramproof why COLUMN FILE...         why a column cannot be kept, or can\n"
          "  gramproof check --help               the options\n"
          "  gramproof recheck VERDICT.json FILE... check the proofs in a verdict\n"
          "  gramproof --version\n"
@@ -69,17 +100,7 @@ std::string check_help() {
       "\n"
       "Audits a design: rank and relations (proved), digits, recorded precision, and\n"
       "what collinearity costs. Quote designs with single quotes for the shell.\n";
-  std::string group;
-  for (const OptionEntry& option : check_options()) {
-    if (option.group != group) {
-      group = option.group;
-      text += "\n" + group + "\n";
-    }
-    const std::string head = "--" + option.name + (option.value.empty() ? "" : " " + option.value);
-    text += fmt::format("  {:<25} {}\n", head, option.text);
-    if (!option.fallback.empty())
-      text += fmt::format("  {:<25} (default: {})\n", "", option.fallback);
-  }
+  text += listed_options(check_options());
   text +=
       "\n"
       "The design language, by example\n"

@@ -18,6 +18,12 @@ struct OptionEntry {
 
 [[nodiscard]] const std::vector<OptionEntry>& check_options();
 
+/// Those of `why`: all that say what is read and how.
+[[nodiscard]] const std::vector<OptionEntry>& why_options();
+
+/// The options under their headings, as --help lists them.
+[[nodiscard]] std::string listed_options(const std::vector<OptionEntry>& options);
+
 /// Text of `gramproof --help` and of `gramproof check --help`.
 [[nodiscard]] std::string general_help();
 [[nodiscard]] std::string check_help();
