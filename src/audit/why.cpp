@@ -67,7 +67,9 @@ void fill_standing_of_all(const Audit& audit, Why& why) {
   for (std::size_t j = 0; j < audit.design.columns.size(); ++j) {
     const int column = static_cast<int>(j);
     if (!in_exact_relation(audit, column)) {
-      why.never_removable.push_back(column);
+      // What is left out all the same, within rounding or for want of rows, has to go.
+      const bool kept = std::find(audit.kept.begin(), audit.kept.end(), column) != audit.kept.end();
+      if (kept) why.never_removable.push_back(column);
     } else if (audit.column_records[j].nonzero_rows == 0) {
       why.always.push_back(column);
     } else {

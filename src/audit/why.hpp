@@ -125,7 +125,7 @@ struct Why {
   std::vector<HabitOutcome> habits;  ///< empty where nothing has to go
   Choice choice;  ///< of the only column asked for if that can go, else gramproof's own
   std::vector<WhyContrast> contrasts;  ///< under that choice
-  std::vector<int> never_removable;    ///< design columns in no exact relation
+  std::vector<int> never_removable;    ///< kept columns in no exact relation
   std::vector<int> sometimes;          ///< can go in some choice and stay in another
   std::vector<int> always;             ///< columns of zeros: no choice keeps them
   bool passed_for_rows = false;        ///< a further pass found the rows that hold a column up

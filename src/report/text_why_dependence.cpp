@@ -88,13 +88,12 @@ std::string own_choice_sentence(const Why& why, const WhyColumn& asked) {
         name);
   }
   if (asked.dependence->left_out) return "`gramproof check` leaves it out.";
-  const std::vector<int> instead = [&] {
-    std::vector<int> gone;
-    for (const int column : why.audit.left_out) {
-      if (!contains(asked.dependence->choice.without, column)) gone.push_back(column);
-    }
-    return gone;
-  }();
+  // What is left out within rounding or for want of rows has no part in this.
+  std::vector<int> instead;
+  for (const int column : why.audit.left_out) {
+    const bool here = contains(asked.dependence->choice.without, column);
+    if (!here && audit::in_exact_relation(why.audit, column)) instead.push_back(column);
+  }
   return fmt::format("`gramproof check` keeps it and leaves out {} instead.",
                      names_of(why.audit, instead));
 }

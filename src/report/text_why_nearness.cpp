@@ -145,16 +145,21 @@ void write_competitions(const audit::Audit& audit, const Nearness& near, Page& p
 }
 
 /// Columns with logarithms and the like are proved independent by intervals, or not at all.
-std::string proof_sentence(const audit::Audit& audit, int column) {
+std::string proof_sentence(const audit::Audit& audit, const WhyColumn& asked) {
   const std::vector<int>& unsettled = audit.rank.unsettled;
+  const bool beside_kept_only =
+      std::any_of(asked.nearness->relations.begin(), asked.nearness->relations.end(),
+                  [](const RelationFinding& relation) {
+                    return relation.standing == Standing::within_rounding;
+                  });
   const std::string rows = counted(audit.rows_used, "row", "rows");
   if (unsettled.empty()) {
     return fmt::format(
-        "It is no combination of the other columns: proved from the decimals of the {} used, with "
-        "no tolerance.",
-        rows);
+        "It is no combination of the other columns{}: proved from the decimals of the {} used, "
+        "with no tolerance.",
+        beside_kept_only ? " that are kept" : "", rows);
   }
-  if (std::find(unsettled.begin(), unsettled.end(), column) != unsettled.end()) {
+  if (std::find(unsettled.begin(), unsettled.end(), asked.column) != unsettled.end()) {
     return "It counts as independent of the other columns. That is not proved: logarithms, roots "
            "and the like are no decimals, and enclosing their rounding errors did not settle it.";
   }
@@ -216,7 +221,7 @@ void write_nearness(const Why& why, const WhyColumn& asked, Page& page) {
     write_relations(near, page);
     return;
   }
-  page.paragraph(proof_sentence(audit, asked.column), 2);
+  page.paragraph(proof_sentence(audit, asked), 2);
   if (!audit.left_out.empty()) {
     const bool one = audit.left_out.size() == 1;
     page.paragraph(

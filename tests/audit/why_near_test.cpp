@@ -6,30 +6,20 @@
 #include <string>
 #include <vector>
 
-#include "audit/why.hpp"
+#include "asked.hpp"
 #include "support/folded.hpp"
 #include "support/random_numbers.hpp"
-#include "support/scratch.hpp"
 
 namespace gramproof::audit {
 namespace {
 
 using test::Random;
-using test::Scratch;
 
-Why asked(const std::string& text, const Request& request, const std::string& column) {
-  const Scratch scratch;
-  Result<table::Source> source = table::Source::open({scratch.file("data.csv", text)}, {});
-  REQUIRE(source);
-  Result<Why> result = why(source.value(), request, column);
+/// The answer to a question that has one.
+Why answered(const std::string& text, const Request& request, const std::string& column) {
+  Result<Why> result = asked(text, request, column);
   if (!result) FAIL(to_line(result.error()));
   return std::move(result.value());
-}
-
-Why asked(const std::string& text, const std::string& design, const std::string& column) {
-  Request request;
-  request.design.design = design;
-  return asked(text, request, column);
 }
 
 const Nearness& nearness(const Why& why) {
@@ -66,7 +56,7 @@ TEST_CASE("rows that hold a 0/1 column up beside the constant: closed form") {
       Request request;
       request.design.design = "constant, flag";
       request.design.weight = "w";
-      const Why why = asked(indicator(count, ones, weight), request, "flag");
+      const Why why = answered(indicator(count, ones, weight), request, "flag");
       const Nearness& near = nearness(why);
       const double m = ones, n = count, p = m / n, q = 1 - p;
       const double squares = m * q;  // m q^2 + (n - m) p^2
@@ -171,7 +161,7 @@ TEST_CASE("the same answer for any number of threads and for several columns at 
   request.design.design = "constant, levels(region), x, y";
   const auto rows_of = [&](unsigned threads) {
     request.threads = threads;
-    const Why why = asked(text, request, "levels(region)");
+    const Why why = answered(text, request, "levels(region)");
     CHECK(why.columns.size() == 3);
     std::vector<double> figures;
     for (const WhyColumn& column : why.columns) {

@@ -68,6 +68,15 @@ class Readme(unittest.TestCase):
         run = self.run_in_folder(commands[1].split())
         self.assertEqual((run.returncode, run.stderr), (0, ""))
 
+    def test_the_examples_of_why_run(self):
+        examples = re.findall(r"^    (gramproof why .*)$", section("Why a column goes"), re.MULTILINE)
+        self.assertGreaterEqual(len(examples), 3)
+        for example in examples:
+            with self.subTest(example):
+                run = self.run_in_folder(["bash", "-c", example])
+                self.assertEqual((run.returncode, run.stderr), (0, ""))
+                self.assertIn("can", run.stdout.splitlines()[0])
+
     def check_design(self, term):
         design = term if term == "constant" else f"constant, {term}"
         return self.run_in_folder([GRAMPROOF, "check", "small.csv", "--design", design])
