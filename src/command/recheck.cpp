@@ -10,6 +10,7 @@
 #include "command/exit_status.hpp"
 #include "command/option_table.hpp"
 #include "command/output.hpp"
+#include "command/reading.hpp"
 
 namespace gramproof::command {
 namespace {
@@ -23,11 +24,6 @@ const std::vector<OptionEntry>& recheck_options() {
       {"help", "", "", "", "this text", false},
   };
   return table;
-}
-
-int failed(const Error& error) {
-  complain(error);
-  return error.kind == ErrorKind::internal ? defect : not_audited;
 }
 
 struct CloseFile {
@@ -115,12 +111,8 @@ std::string claims_text(const std::vector<Claim>& claims) {
 }
 
 int recheck(const std::vector<std::string>& arguments) {
-  Result<Arguments> sorted = sort_arguments(arguments, recheck_options());
-  if (!sorted) {
-    if (sorted.error().hint.find("gramproof check --help") != std::string::npos)
-      sorted.error().hint = "`gramproof recheck --help` lists the options";
-    return failed(sorted.error());
-  }
+  Result<Arguments> sorted = sort_arguments(arguments, recheck_options(), "recheck");
+  if (!sorted) return failed(sorted.error());
   if (sorted.value().has("help")) {
     const Result<void> shown = write_standard_output(recheck_help());
     return shown ? good_enough : failed(shown.error());

@@ -33,9 +33,11 @@ std::string value_of(const std::string& tree) {
     case Value::State::unsettled:
       return "unsettled";
     case Value::State::not_number:
+      return "no number";
+    case Value::State::too_large:
       break;
   }
-  return "no number";
+  return "too large";
 }
 
 const std::string x = R"({"cell": "x"})";
@@ -101,6 +103,7 @@ TEST_CASE("definitions: values in rationals") {
       {with("asinh", {z}), "irrational", "and so is asinh"},
       {with("log", {log_x}), "unsettled", "log 3 may have a logarithm"},
       {with("divide", {x, log_x}), "unsettled", "log 3 may be zero"},
+      {power(power(power(power(x, 64), 64), 64), 64), "too large", "27 million bits"},
       {power(log_x, 2), "irrational", "a power of something irrational"},
       {power(log_x, -2), "unsettled", "may be a division by zero"},
       {compared(log_x, ">", y), "irrational", "a comparison that is not decided here"},
