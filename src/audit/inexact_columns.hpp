@@ -24,7 +24,7 @@ struct InexactColumns {
 /// Settles the kept columns that are not exact (methods: 2, item 4). Independence is proved on rows
 /// of the sample; a relation found there is tested in interval arithmetic on every used row, by a
 /// further pass, and rows that violate it join the sample. Errors: those of the passes. Cost: see
-/// exact::interval_rank; a pass takes some 10 microseconds a row and column of a relation.
+/// exact::interval_rank; a pass takes some 20 microseconds a row and column of a relation.
 [[nodiscard]] Result<InexactColumns> settle_inexact_columns(EveryRow& every_row,
                                                             const Identification& found);
 
