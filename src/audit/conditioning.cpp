@@ -141,6 +141,10 @@ std::optional<double> correlation_determinant(const factor::Factor& factor,
 Conditioning conditioning_of(const factor::Factor& factor, const std::vector<int>& kept,
                              const std::vector<bool>& is_constant, bool correlation_singular) {
   Conditioning result;
+  if (kept.empty()) {
+    result.digits = digits_of(result.condition_number);
+    return result;
+  }
   const factor::Factor own = factor::select(factor, kept);
   const Matrix scaled = factor::unit_length(own);
   const factor::Spectrum spectrum = factor::spectrum(scaled);

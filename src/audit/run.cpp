@@ -140,6 +140,11 @@ void fill_figures(const scan::Digest& digest, const std::vector<int>& constant_s
                                      }) &&
                         audit.centred_by == CentredBy::span;
   audit.conditioning = conditioning_of(digest.factor, audit.kept, is_constant, singular);
+  // Columns that are all zero leave nothing to invert.
+  if (audit.kept.empty()) {
+    audit.recording.steps = recorded_steps(digest, audit.schema, given);
+    return;
+  }
   audit.inflation = inflation_of(digest.factor, audit.kept, is_constant, audit.centred_by);
   audit.between = between_families(digest.factor, audit.design, audit.kept, constant_support);
   audit.recording = recording_of(digest, audit.kept, recorded_steps(digest, audit.schema, given));

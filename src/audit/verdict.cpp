@@ -45,6 +45,8 @@ bool any_focused(const Audit& audit) {
 }
 
 std::string singular_summary(const Audit& audit, Overall after, const std::vector<int>& lost) {
+  if (audit.kept.empty())
+    return "Singular as written: every column is 0 in all rows used, and no coefficient is left.";
   return fmt::format("Singular as written; {} without {}; {}.", word_of(after),
                      names_in_words(labels(audit, audit.left_out), 6),
                      fate_of_coefficients(audit, lost));

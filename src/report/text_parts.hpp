@@ -30,6 +30,12 @@ inline constexpr std::size_t most_notes_told = 6;
 [[nodiscard]] std::string listed(const std::vector<std::string>& items,
                                  std::size_t most = most_names);
 
+/// "`a`", "`a` or `b`": any one of them.
+[[nodiscard]] std::string alternatives(const audit::Audit& audit, const std::vector<int>& columns);
+/// "To end it, leave out `a` or `b`."; empty if nothing can be left out.
+[[nodiscard]] std::string removable_sentence(const audit::Audit& audit,
+                                             const audit::RelationFinding& relation);
+
 /// "1 column is", "3 columns are".
 [[nodiscard]] std::string counted_are(std::size_t number, std::string_view singular,
                                       std::string_view plural);

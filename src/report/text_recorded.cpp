@@ -36,10 +36,7 @@ void write_relations_within_recorded_precision(const audit::Audit& audit, Page& 
         counted(relation.rows_holding, "row used", "rows used"), relation.largest_residual);
     if (!relation.cause_text.empty()) text += " " + relation.cause_text;
     page.paragraph(text, 5);
-    if (!relation.removable.empty()) {
-      page.paragraph(
-          fmt::format("To end it, leave out one of: {}.", names_of(audit, relation.removable)), 5);
-    }
+    page.paragraph(removable_sentence(audit, relation), 5);
   }
   if (relations.size() == told) return;
   page.blank();

@@ -32,19 +32,6 @@ std::string sentence(std::string text) {
   return text;
 }
 
-/// "`a`", "`a` or `b`": any one of them.
-std::string alternatives(const audit::Audit& audit, const std::vector<int>& columns) {
-  const std::string text = names_of(audit, columns);
-  if (columns.size() < 2 || columns.size() > most_names + 1) return text;
-  const std::size_t last = text.rfind(" and ");
-  return text.substr(0, last) + " or " + text.substr(last + 5);
-}
-
-std::string removable_sentence(const audit::Audit& audit, const RelationFinding& relation) {
-  if (relation.removable.empty()) return "";
-  return fmt::format("To end it, leave out {}.", alternatives(audit, relation.removable));
-}
-
 std::string lines_of(const audit::Violation& violation) {
   std::string text =
       fmt::format("{}:{} (row {}): ", violation.file, violation.line, grouped(violation.row));

@@ -35,6 +35,18 @@ std::string names_of(const audit::Audit& audit, const std::vector<int>& columns,
   return listed(names, most);
 }
 
+std::string alternatives(const audit::Audit& audit, const std::vector<int>& columns) {
+  const std::string text = names_of(audit, columns);
+  if (columns.size() < 2 || columns.size() > most_names + 1) return text;
+  const std::size_t last = text.rfind(" and ");
+  return text.substr(0, last) + " or " + text.substr(last + 5);
+}
+
+std::string removable_sentence(const audit::Audit& audit, const audit::RelationFinding& relation) {
+  if (relation.removable.empty()) return "";
+  return fmt::format("To end it, leave out {}.", alternatives(audit, relation.removable));
+}
+
 std::string counted_are(std::size_t number, std::string_view singular, std::string_view plural) {
   return counted(number, singular, plural) + (number == 1 ? " is" : " are");
 }

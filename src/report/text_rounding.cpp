@@ -31,11 +31,6 @@ std::string doubles_sentence(const audit::Audit& audit) {
          "decide by a tolerance, and may keep or drop a column as its tolerance has it.";
 }
 
-std::string removable_sentence(const audit::Audit& audit, const RelationFinding& relation) {
-  if (relation.removable.empty()) return "";
-  return fmt::format("To end it, leave out one of: {}.", names_of(audit, relation.removable));
-}
-
 }  // namespace
 
 void write_relations_within_rounding(const audit::Audit& audit, Page& page) {

@@ -339,6 +339,16 @@ TEST_CASE("shares rounded to one decimal: no farther from 100 than their roundin
   CHECK(audit.recording.distance_ratios[0] == doctest::Approx(1.0).epsilon(0.15));
 }
 
+TEST_CASE("a design of zeros is singular, and nothing is left of it") {
+  const Audit audit = audited("x,y\n0,1\n0,2\n0,4\n", "x");
+  CHECK(audit.rank.rank == 0);
+  CHECK(audit.kept.empty());
+  CHECK(audit.verdict.overall == Overall::singular);
+  CHECK(audit.verdict.summary.find("no coefficient is left") != std::string::npos);
+  REQUIRE(audit.relations.size() == 1);
+  CHECK(audit.relations[0].cause_kind == "zero_column");
+}
+
 TEST_CASE("ordinary specifications are left in peace") {
   struct Case {
     std::string why, design;
