@@ -173,12 +173,12 @@ Reason exception_reason(const Audit& audit, const Focus& focus) {
     reason.grade = grade;
     std::string place;
     if (!relation.violations.empty()) {
-      place = fmt::format(" ({}:{})", relation.violations.front().file,
-                          relation.violations.front().line);
+      place = fmt::format(" ({}{}:{})", relation.rows_violating == 1 ? "" : "the first at ",
+                          relation.violations.front().file, relation.violations.front().line);
     }
     reason.sentence = fmt::format(
         "{} in all rows but {}{}: the coefficients rest on {} alone (up to 30 such rows is a "
-        "failure: our own choice).",
+        "failure, more a caution: our own choice).",
         relation.text, grouped(relation.rows_violating), place,
         relation.rows_violating == 1 ? "that row" : "those rows");
   }

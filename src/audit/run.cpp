@@ -6,6 +6,7 @@
 #include <cmath>
 #include <utility>
 
+#include "audit/contrasts.hpp"
 #include "audit/figures.hpp"
 #include "audit/identification.hpp"
 #include "audit/rare_levels.hpp"
@@ -13,7 +14,6 @@
 #include "audit/rounding_relations.hpp"
 #include "audit/verdict.hpp"
 #include "base/text.hpp"
-#include "exact/relations.hpp"
 #include "scan/pass.hpp"
 #include "table/survey.hpp"
 
@@ -154,79 +154,6 @@ void fill_figures(const scan::Digest& digest, const std::vector<int>& constant_s
   }
 }
 
-/// The first relation within rounding that the contrast is not orthogonal to: in exact arithmetic
-/// where its coefficients are whole numbers, else by the doubles nearest to them, whose products
-/// cancel to 1e-15 where they cancel, and are told from what does not.
-const RelationFinding* blocking_within_rounding(const std::vector<design::ContrastPart>& parts,
-                                                const Audit& audit) {
-  for (const RelationFinding& relation : audit.relations) {
-    if (relation.standing != Standing::within_rounding) continue;
-    mpq_class sum = 0, size = 0;
-    for (const RelationTerm& term : relation.terms) {
-      for (const design::ContrastPart& part : parts) {
-        if (part.column != term.column) continue;
-        const mpq_class coefficient =
-            term.exact.empty() ? mpq_class(term.coefficient) : mpq_class(term.exact);
-        const mpq_class product = design::exact_number(part.number) * coefficient;
-        sum += product;
-        size += abs(product);
-      }
-    }
-    const bool exact = !relation.terms.front().exact.empty();
-    if (exact ? sum != 0 : std::abs(sum.get_d()) > 1e-12 * size.get_d()) return &relation;
-  }
-  return nullptr;
-}
-
-/// Estimable: orthogonal to every exact relation (Silvey 1969), decided in integers, and to those
-/// within rounding.
-ContrastFinding contrast_finding(const std::string& text,
-                                 const std::vector<design::ContrastPart>& parts,
-                                 const scan::Digest& digest, const Audit& audit) {
-  ContrastFinding finding;
-  finding.text = text;
-  finding.estimable = true;
-  for (const exact::NullVector& relation : audit.null_space) {
-    mpq_class product = 0;
-    for (const design::ContrastPart& part : parts) {
-      product +=
-          design::exact_number(part.number) * relation[static_cast<std::size_t>(part.column)];
-    }
-    if (product == 0) continue;
-    finding.estimable = false;
-    finding.blocking_relation = exact::equation(audit.design, relation);
-    return finding;
-  }
-  if (const RelationFinding* relation = blocking_within_rounding(parts, audit)) {
-    finding.estimable = false;
-    finding.blocking_relation = relation->text;
-    return finding;
-  }
-  Vector coefficients = Vector::Zero(static_cast<Index>(audit.kept.size()));
-  for (std::size_t i = 0; i < audit.kept.size(); ++i) {
-    for (const design::ContrastPart& part : parts) {
-      if (part.column == audit.kept[i]) coefficients[static_cast<Index>(i)] += part.number.value;
-    }
-  }
-  finding.standard_error_per_sigma = contrast_error(digest.factor, audit.kept, coefficients);
-  return finding;
-}
-
-Result<void> fill_contrasts(const Request& request, bool too_few_rows, const scan::Digest& digest,
-                            Audit& audit) {
-  for (const std::string& text : request.contrasts) {
-    Result<std::vector<design::ContrastPart>> parts =
-        design::parse_contrast(text, audit.design, audit.schema);
-    if (!parts) return parts.error();
-    if (too_few_rows) {
-      audit.contrasts.push_back({text, false, std::nullopt, "fewer rows than columns"});
-      continue;
-    }
-    audit.contrasts.push_back(contrast_finding(text, parts.value(), digest, audit));
-  }
-  return {};
-}
-
 void add_notes(double chance_of_a_miss, Audit& audit) {
   audit.notes = audit.design.notes;
   if (chance_of_a_miss > 1e-6) {
@@ -236,6 +163,18 @@ void add_notes(double chance_of_a_miss, Audit& audit) {
                                        "would be missed with a probability of {}.",
                                        figure(chance_of_a_miss)),
                            {}});
+  }
+  std::vector<std::string> protected_out;
+  for (const int column : audit.left_out) {
+    const design::DesignColumn& out = audit.design.columns[static_cast<std::size_t>(column)];
+    if (out.role == design::Role::protect) protected_out.push_back(out.label);
+  }
+  if (!protected_out.empty()) {
+    audit.notes.push_back(
+        {"protected_left_out",
+         "Not everything that is protected can be kept: " + names_in_words(protected_out, 6) +
+             " follows from protected columns before it.",
+         protected_out});
   }
   if (!audit.rank.unsettled.empty()) {
     std::vector<std::string> names;
@@ -364,7 +303,8 @@ Result<Audit> run(table::Source& source, const Request& request) {
   if (Result<void> done = judge_recorded_precision(every_row, audit); !done) return done.error();
   audit.passes += every_row.passes() - passes_before;
   spare_protected(audit);
-  if (Result<void> done = fill_contrasts(request, too_few_rows, bound.digest, audit); !done)
+  if (Result<void> done = fill_contrasts(request.contrasts, too_few_rows, bound.digest, audit);
+      !done)
     return done.error();
   add_notes(chance_of_a_miss, audit);
   audit.verdict = verdict_of(audit, lost);

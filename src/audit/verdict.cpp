@@ -73,9 +73,10 @@ std::string summary_of(const Audit& audit, const Verdict& verdict) {
                                 verdict.coefficients_lost);
       }
       std::string why;
-      if (grounds.computable.grade == Grade::fail)
+      if (grounds.computable.grade == Grade::fail) {
         why = "too few digits survive the inversion of X'X";
-      if (centring_cures(audit)) why += ", which centring the columns cures";
+        if (centring_cures(audit)) why += ", which centring the columns cures";
+      }
       if (grounds.recorded.grade == Grade::fail) {
         why += std::string(why.empty() ? "" : ", and ") +
                "a near relation is no more than the rounding of the data";

@@ -213,6 +213,8 @@ Result<void> fill_contrasts(const Request& request, const Scanned& scanned, Why&
     if (contrast.value().estimable && !audited.estimable) {
       contrast.value().estimable = false;
       contrast.value().blocking_relation = audited.blocking_relation;
+      // What it would equal instead is told only where the relation is exact.
+      contrast.value().on_kept.clear();
     }
     why.contrasts.push_back(std::move(contrast.value()));
   }

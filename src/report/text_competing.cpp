@@ -101,10 +101,8 @@ void write_near_relations(const audit::Audit& audit, Page& page) {
   }
   if (relations.size() == told) return;
   page.blank();
-  page.paragraph(fmt::format("{} not shown here; the JSON document lists them.",
-                             counted_are(relations.size() - told, "further near relation",
-                                         "further near relations")),
-                 2);
+  page.paragraph(
+      not_shown(relations.size() - told, "further near relation", "further near relations"), 2);
 }
 
 std::string plural_of_indices(std::size_t number) {
@@ -195,9 +193,9 @@ void write_competing(const audit::Audit& audit, Page& page) {
   page.heading(near ? "Columns that compete" : "How far the columns are from competing");
   if (near) {
     page.paragraph(
-        "These combinations of columns are nearly, but not exactly, in balance, so that the data "
-        "say "
-        "little about each of their coefficients and more about the combination.",
+        "These combinations of columns are nearly, but not exactly, in balance: the data say less "
+        "about each coefficient alone than about the combination. The nearest is told first; each "
+        "further one is looked for with the columns explained before set aside.",
         2);
     write_near_relations(audit, page);
     page.blank();

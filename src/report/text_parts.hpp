@@ -40,6 +40,10 @@ inline constexpr std::size_t most_notes_told = 6;
 [[nodiscard]] std::string counted_are(std::size_t number, std::string_view singular,
                                       std::string_view plural);
 
+/// "1 further relation is not shown here; the JSON document lists it."
+[[nodiscard]] std::string not_shown(std::size_t number, std::string_view singular,
+                                    std::string_view plural);
+
 /// Digits that hold in a condition index. The error of a singular value is the same for all of them
 /// (Weyl), so a smaller index is known to more digits than the condition number.
 [[nodiscard]] double known_digits_of_index(const audit::Audit& audit, double index);

@@ -40,10 +40,7 @@ void write_relations_within_recorded_precision(const audit::Audit& audit, Page& 
   }
   if (relations.size() == told) return;
   page.blank();
-  page.paragraph(
-      fmt::format("{} not shown here; the JSON document lists them.",
-                  counted_are(relations.size() - told, "further relation", "further relations")),
-      2);
+  page.paragraph(not_shown(relations.size() - told, "further relation", "further relations"), 2);
 }
 
 }  // namespace gramproof::report

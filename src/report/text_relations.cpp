@@ -100,7 +100,9 @@ void write_left_out(const audit::Audit& audit, Page& page) {
   page.heading("What is left out here, and what that does to the others");
   page.paragraph(
       fmt::format("This report goes on without {}. The fitted values are the same whichever column "
-                  "of a relation is left out.",
+                  "of a relation is left out. Kept are first the columns that are protected, then "
+                  "those in focus, the constant and the others as written, each unless it follows "
+                  "from those before it; the most frequent of a full set of levels comes last.",
                   names_of(audit, audit.left_out)),
       2);
   std::vector<int> changed;
@@ -159,10 +161,7 @@ void write_relations_with_exceptions(const audit::Audit& audit, Page& page) {
   }
   if (relations.size() == told) return;
   page.blank();
-  page.paragraph(
-      fmt::format("{} not shown here; the JSON document lists them.",
-                  counted_are(relations.size() - told, "further relation", "further relations")),
-      2);
+  page.paragraph(not_shown(relations.size() - told, "further relation", "further relations"), 2);
 }
 
 }  // namespace gramproof::report

@@ -51,6 +51,11 @@ std::string counted_are(std::size_t number, std::string_view singular, std::stri
   return counted(number, singular, plural) + (number == 1 ? " is" : " are");
 }
 
+std::string not_shown(std::size_t number, std::string_view singular, std::string_view plural) {
+  return fmt::format("{} not shown here; the JSON document lists {}.",
+                     counted_are(number, singular, plural), number == 1 ? "it" : "them");
+}
+
 double largest_known_condition(const audit::Audit& audit) {
   const auto columns = static_cast<double>(std::max<std::size_t>(audit.kept.size(), 1));
   return 1 / (64 * columns * unit_roundoff);

@@ -65,11 +65,7 @@ void write_relations_within_rounding(const audit::Audit& audit, Page& page) {
   }
   if (relations.size() == told) return;
   page.blank();
-  page.paragraph(
-      fmt::format("{} not shown here; the JSON document lists {}.",
-                  counted_are(relations.size() - told, "further relation", "further relations"),
-                  relations.size() - told == 1 ? "it" : "them"),
-      2);
+  page.paragraph(not_shown(relations.size() - told, "further relation", "further relations"), 2);
 }
 
 void write_doubles(const audit::Audit& audit, Page& page) {

@@ -61,9 +61,14 @@ void write_contrasts(const Why& why, Page& page) {
                                             form_text(why.audit, contrast.estimates))),
               2);
   }
+  const bool proved = std::none_of(why.audit.relations.begin(), why.audit.relations.end(),
+                                   [](const audit::RelationFinding& relation) {
+                                     return relation.standing == audit::Standing::within_rounding;
+                                   });
   page.paragraph(
-      "Proved in whole numbers: a sum can be estimated if and only if it is "
-      "orthogonal to every relation (Silvey 1969).",
+      fmt::format("A sum can be estimated if and only if it is orthogonal to every relation "
+                  "(Silvey 1969): proved in whole numbers{}.",
+                  proved ? "" : " for exact relations, not for those that hold within rounding"),
       2);
 }
 

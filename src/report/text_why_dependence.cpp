@@ -178,8 +178,11 @@ void write_what_could_go(const Why& why, const WhyColumn& asked, Page& page) {
   page.heading("Which column could go instead");
   const std::vector<int> beside = without(found.choice.without, asked.column);
   if (found.instead.empty()) {
-    page.paragraph(fmt::format("None: {} goes under every choice that keeps what is protected.",
-                               name_of(audit, asked.column)),
+    const bool any_protected =
+        std::any_of(audit.design.columns.begin(), audit.design.columns.end(),
+                    [](const design::DesignColumn& c) { return c.role == design::Role::protect; });
+    page.paragraph(fmt::format("None: {} goes under every choice{}.", name_of(audit, asked.column),
+                               any_protected ? " that keeps as many of the protected columns" : ""),
                    2);
   } else {
     page.paragraph(fmt::format("{}{}. The fitted values are the same whichever goes; what the "

@@ -138,7 +138,7 @@ void write_competitions(const audit::Audit& audit, const Nearness& near, Page& p
             "At the scaled condition index {} more than half of the variance of its coefficient "
             "arises{}.",
             figure(competition.index, known),
-            competition.with.empty() ? ", of no other column's"
+            competition.with.empty() ? ", of that of no other column"
                                      : ", as it does for " + names_of(audit, competition.with)),
         2);
   }
@@ -147,11 +147,10 @@ void write_competitions(const audit::Audit& audit, const Nearness& near, Page& p
 /// Columns with logarithms and the like are proved independent by intervals, or not at all.
 std::string proof_sentence(const audit::Audit& audit, const WhyColumn& asked) {
   const std::vector<int>& unsettled = audit.rank.unsettled;
-  const bool beside_kept_only =
-      std::any_of(asked.nearness->relations.begin(), asked.nearness->relations.end(),
-                  [](const RelationFinding& relation) {
-                    return relation.standing == Standing::within_rounding;
-                  });
+  const bool beside_kept_only = std::any_of(audit.relations.begin(), audit.relations.end(),
+                                            [](const RelationFinding& relation) {
+                                              return relation.standing == Standing::within_rounding;
+                                            });
   const std::string rows = counted(audit.rows_used, "row", "rows");
   if (unsettled.empty()) {
     return fmt::format(
