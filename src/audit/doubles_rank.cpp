@@ -50,6 +50,7 @@ Bound bound_of_power(const design::Expression& expression, const table::Schema& 
 /// nothing is rounded in any row; else none.
 Bound largest_whole_value(const design::Expression& expression, const table::Schema& schema) {
   using design::Operation;
+  if (design::is_zero_one(expression)) return 1;
   switch (expression.operation) {
     case Operation::cell:
       return bound_of_cell(schema.columns[static_cast<std::size_t>(expression.column)]);
@@ -71,13 +72,6 @@ Bound largest_whole_value(const design::Expression& expression, const table::Sch
       return combined(expression, schema, [](double a, double b) { return std::max(a, b); });
     case Operation::power:
       return bound_of_power(expression, schema);
-    case Operation::compare:
-    case Operation::is_level:
-    case Operation::same_text:
-    case Operation::both:
-    case Operation::either:
-    case Operation::negation:
-      return 1;
     default:
       return std::nullopt;
   }

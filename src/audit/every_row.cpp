@@ -1,6 +1,6 @@
 #include "audit/every_row.hpp"
 
-#include <unordered_set>
+#include "scan/sampler.hpp"
 
 namespace gramproof::audit {
 
@@ -21,18 +21,9 @@ Result<Matrix> EveryRow::sample_values() const {
 }
 
 std::size_t EveryRow::join(const std::vector<scan::Examined>& answers) {
-  table::Piece& sample = digest_.sample;
-  std::unordered_set<std::uint64_t> known(sample.row.begin(), sample.row.end());
   std::size_t joined = 0;
-  for (const scan::Examined& answer : answers) {
-    std::vector<std::size_t> fresh;
-    for (std::size_t i = 0; i < answer.violators.rows; ++i) {
-      if (known.insert(answer.violators.row[i]).second) fresh.push_back(i);
-    }
-    if (fresh.empty()) continue;
-    table::append(sample, table::gather(answer.violators, fresh));
-    joined += fresh.size();
-  }
+  for (const scan::Examined& answer : answers)
+    joined += scan::join(digest_.sample, answer.violators);
   return joined;
 }
 

@@ -6,7 +6,6 @@
 
 #include "audit/rare_levels.hpp"
 #include "audit/violations.hpp"
-#include "base/text.hpp"
 #include "exact/hidden_relations.hpp"
 #include "exact/relations.hpp"
 
@@ -139,8 +138,7 @@ std::vector<NullVector> resting_on_one_row(const ExceptionSearch& search) {
 }
 
 std::size_t columns_in(const NullVector& vector) {
-  return static_cast<std::size_t>(
-      std::count_if(vector.begin(), vector.end(), [](const auto& v) { return v != 0; }));
+  return exact::support_of(vector).size();
 }
 
 /// Fewer columns by adding exact relations, which changes no residual: `total = parts` where
@@ -221,32 +219,20 @@ std::vector<NullVector> candidates(const ExceptionSearch& search, Exceptions& re
   return vectors;
 }
 
-/// The sentence of a cause that does not speak of every row.
-void fill_cause(const ExceptionSearch& search, const NullVector& vector, std::uint64_t holding,
-                RelationFinding& finding) {
-  std::vector<exact::ColumnSummary> columns;
-  for (const scan::ColumnRecord& record : search.digest.columns)
-    columns.push_back({record.min, record.max, record.nonzero_rows});
-  const exact::Relation relation =
-      exact::describe(search.design, search.schema, vector, columns, holding);
-  finding.cause_kind = exact::word_of(relation.cause);
-  const std::string every = "in all " + grouped(holding) + " rows used";
-  const std::size_t at = relation.cause_text.find(every);
-  if (at == std::string::npos) return;
-  finding.cause_text = relation.cause_text;
-  finding.cause_text.replace(at, every.size(), "in all other rows");
-}
-
 RelationFinding finding_of(const ExceptionSearch& search, const NullVector& vector,
                            const scan::TestedVector& test) {
   RelationFinding finding = exact_terms(vector, search.design.columns.size());
   finding.standing = Standing::exact_except;
-  finding.text = exact::equation(search.design, vector);
+  const exact::Relation relation =
+      exact::describe(search.design, search.schema, vector, summaries_of(search.digest.columns),
+                      test.holding, "in all other rows");
+  finding.text = relation.text;
+  finding.cause_kind = exact::word_of(relation.cause);
+  finding.cause_text = relation.cause_text;
   finding.rows_holding = test.holding;
   finding.rows_violating = test.violating;
   finding.largest_residual = residual_text(test.largest_residual);
   finding.largest_residual_value = test.largest_residual.get_d();
-  fill_cause(search, vector, test.holding, finding);
   for (const RelationTerm& term : finding.terms) finding.removable.push_back(term.column);
   finding.violations = violations_of(search.design, search.schema, search.file_names, vector, test);
   return finding;

@@ -11,14 +11,6 @@
 namespace gramproof::audit {
 namespace {
 
-std::vector<exact::ColumnSummary> summaries(const scan::Digest& digest) {
-  std::vector<exact::ColumnSummary> result;
-  for (const scan::ColumnRecord& record : digest.columns) {
-    result.push_back({record.min, record.max, record.nonzero_rows});
-  }
-  return result;
-}
-
 std::vector<int> support(const exact::NullVector& vector, std::size_t columns) {
   std::vector<int> result;
   for (std::size_t j = 0; j < columns; ++j) {
@@ -36,7 +28,7 @@ void list_relations(const design::Design& design, const table::Schema& schema,
     const std::vector<int> a = support(left, columns), b = support(right, columns);
     return a.size() != b.size() ? a.size() < b.size() : a < b;
   });
-  const std::vector<exact::ColumnSummary> seen = summaries(digest);
+  const std::vector<exact::ColumnSummary> seen = summaries_of(digest.columns);
   for (const exact::NullVector& vector : basis) {
     if (found.relations.size() == most_relations) {
       ++found.relations_omitted;
@@ -122,6 +114,13 @@ void fill_coefficients_lost(Identification& found, std::size_t columns) {
 }
 
 }  // namespace
+
+std::vector<exact::ColumnSummary> summaries_of(const std::vector<scan::ColumnRecord>& records) {
+  std::vector<exact::ColumnSummary> result;
+  for (const scan::ColumnRecord& record : records)
+    result.push_back({record.min, record.max, record.nonzero_rows});
+  return result;
+}
 
 Result<Identification> identify(const design::Design& design, const table::Schema& schema,
                                 const std::vector<std::string>& file_names, scan::Digest& digest,

@@ -10,6 +10,7 @@
 #include "base/result.hpp"
 #include "design/design.hpp"
 #include "exact/rank.hpp"
+#include "exact/relations.hpp"
 #include "scan/digest.hpp"
 #include "scan/pass.hpp"
 #include "table/survey.hpp"
@@ -50,6 +51,13 @@ inline constexpr std::size_t most_relations = 50;
                                               const std::vector<std::string>& file_names,
                                               scan::Digest& digest,
                                               const RowTester& test_on_all_rows);
+
+/// What causes need to know of each design column.
+[[nodiscard]] std::vector<exact::ColumnSummary> summaries_of(
+    const std::vector<scan::ColumnRecord>& records);
+
+/// Columns with a lower place are kept before others: 0 protected, 1 focus, 2 constant, 3 the rest.
+[[nodiscard]] int place_of_role(const design::DesignColumn& column);
 
 /// The order in which columns are kept (methods: 'Kept and left out'): protected, focus, constant,
 /// the rest as written; the most frequent level of a full level set goes to the end. Columns that

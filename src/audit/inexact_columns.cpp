@@ -15,11 +15,6 @@ constexpr std::size_t rows_a_violation = 4;
 /// Each round settles a column for good or finds a new relation for it; far more than is ever seen.
 constexpr int most_rounds = 20;
 
-int rank_of_role(const design::DesignColumn& column) {
-  if (column.role == design::Role::protect) return 0;
-  return column.role == design::Role::focus ? 1 : 2;
-}
-
 /// Kept columns that are not exact, those first that are to be kept before others.
 std::vector<int> inexact_kept(const design::Design& design, const Identification& found) {
   std::vector<int> columns;
@@ -27,8 +22,8 @@ std::vector<int> inexact_kept(const design::Design& design, const Identification
     if (!design.columns[static_cast<std::size_t>(column)].exact) columns.push_back(column);
   }
   std::stable_sort(columns.begin(), columns.end(), [&](int a, int b) {
-    return rank_of_role(design.columns[static_cast<std::size_t>(a)]) <
-           rank_of_role(design.columns[static_cast<std::size_t>(b)]);
+    return place_of_role(design.columns[static_cast<std::size_t>(a)]) <
+           place_of_role(design.columns[static_cast<std::size_t>(b)]);
   });
   return columns;
 }

@@ -7,12 +7,6 @@
 namespace gramproof::audit {
 namespace {
 
-int rank_of_role(const design::DesignColumn& column) {
-  if (column.role == design::Role::protect) return 0;
-  if (column.role == design::Role::focus) return 1;
-  return column.constant ? 2 : 3;
-}
-
 /// The most frequent level of each level set on the rows used, ties to the first in listing order;
 /// -1 when one is left out already.
 std::vector<int> most_frequent_levels(const design::Design& design, const scan::Digest& digest) {
@@ -48,6 +42,12 @@ std::vector<bool> most_frequent_by_hand(const design::Design& design, const scan
 
 }  // namespace
 
+int place_of_role(const design::DesignColumn& column) {
+  if (column.role == design::Role::protect) return 0;
+  if (column.role == design::Role::focus) return 1;
+  return column.constant ? 2 : 3;
+}
+
 std::vector<int> keeping_order(const design::Design& design, const scan::Digest& digest) {
   const std::vector<int> frequent = most_frequent_levels(design, digest);
   const std::vector<bool> by_hand = most_frequent_by_hand(design, digest);
@@ -55,7 +55,7 @@ std::vector<int> keeping_order(const design::Design& design, const scan::Digest&
   for (std::size_t j = 0; j < design.columns.size(); ++j) {
     const design::DesignColumn& column = design.columns[j];
     if (!column.exact) continue;
-    int key = rank_of_role(column);
+    int key = place_of_role(column);
     if (key == 3) {
       const bool last =
           by_hand[j] ||

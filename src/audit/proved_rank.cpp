@@ -1,24 +1,10 @@
 #include "audit/proved_rank.hpp"
 
 #include <algorithm>
-#include <unordered_set>
+
+#include "scan/sampler.hpp"
 
 namespace gramproof::audit {
-namespace {
-
-/// Appends the rows of `more` that the sample does not hold yet. Returns how many.
-std::size_t join_sample(table::Piece& sample, const table::Piece& more) {
-  const std::unordered_set<std::uint64_t> known(sample.row.begin(), sample.row.end());
-  std::vector<std::size_t> fresh;
-  for (std::size_t i = 0; i < more.rows; ++i) {
-    if (!known.contains(more.row[i])) fresh.push_back(i);
-  }
-  if (!fresh.empty()) table::append(sample, table::gather(more, fresh));
-  return fresh.size();
-}
-
-}  // namespace
-
 Result<std::vector<scan::TestedVector>> Prover::test(
     const std::vector<exact::NullVector>& vectors) {
   if (sample_is_everything()) return scan::test_on_rows(design_, digest_.sample, vectors);
@@ -43,7 +29,7 @@ Result<exact::SampleRank> Prover::rank_of(const std::vector<int>& order) {
     if (!tested) return tested.error();
     std::size_t joined = 0;
     for (const scan::TestedVector& vector : tested.value()) {
-      if (vector.violating > 0) joined += join_sample(digest_.sample, vector.violators);
+      if (vector.violating > 0) joined += scan::join(digest_.sample, vector.violators);
     }
     const bool all_hold =
         std::all_of(tested.value().begin(), tested.value().end(),

@@ -5,8 +5,8 @@
 #include <algorithm>
 #include <cmath>
 
+#include "audit/identification.hpp"
 #include "base/numeric.hpp"
-#include "base/text.hpp"
 #include "design/expression.hpp"
 #include "design/rows.hpp"
 #include "exact/relations.hpp"
@@ -139,22 +139,23 @@ std::optional<exact::NullVector> whole_coefficients(const RelationFinding& relat
   return vector;
 }
 
+/// Two columns that measure one thing, or what the cause of the relation in whole numbers is.
 void fill_cause(const Audit& audit, RelationFinding& relation) {
-  relation.cause_kind = relation.terms.size() <= 3 ? "unit_conversion" : "other";
   relation.cause_text.clear();
   const auto vector = whole_coefficients(relation, audit.design.columns.size());
-  if (!vector) return;
-  std::vector<exact::ColumnSummary> columns;
-  for (const scan::ColumnRecord& record : audit.column_records)
-    columns.push_back({record.min, record.max, record.nonzero_rows});
+  if (!vector) {
+    const auto measuring =
+        std::count_if(relation.terms.begin(), relation.terms.end(), [&](const RelationTerm& term) {
+          return !audit.design.columns[static_cast<std::size_t>(term.column)].constant;
+        });
+    relation.cause_kind = measuring == 2 ? "unit_conversion" : "other";
+    return;
+  }
   const exact::Relation found =
-      exact::describe(audit.design, audit.schema, *vector, columns, audit.rows_used);
+      exact::describe(audit.design, audit.schema, *vector, summaries_of(audit.column_records),
+                      audit.rows_used, "but for the rounding of the recorded numbers");
   relation.cause_kind = exact::word_of(found.cause);
-  const std::string every = "in all " + grouped(audit.rows_used) + " rows used";
-  const std::size_t at = found.cause_text.find(every);
-  if (at == std::string::npos) return;
   relation.cause_text = found.cause_text;
-  relation.cause_text.replace(at, every.size(), "but for the rounding of the recorded numbers");
 }
 
 }  // namespace

@@ -11,8 +11,8 @@ namespace gramproof::audit {
 /// Completes an identification (methods: 2, items 4 and 5). A column that depends on others within
 /// rounding leaves `kept`, since no figure of a matrix with it would mean anything, and its
 /// relation is listed; Rank::rank goes on counting exact relations only. Rank::proved, unsettled,
-/// numerical and rank_of_the_doubles are filled. Errors: those of the passes it asks for, which are
-/// added to `found.passes`.
+/// numerical and rank_of_the_doubles are filled. Errors: those of the passes it asks for, which
+/// `every_row` counts.
 [[nodiscard]] Result<void> judge_rounding(EveryRow& every_row, Identification& found);
 
 }  // namespace gramproof::audit

@@ -14,6 +14,7 @@
 #include "audit/rounding_relations.hpp"
 #include "audit/verdict.hpp"
 #include "base/text.hpp"
+#include "exact/hidden_relations.hpp"
 #include "scan/pass.hpp"
 #include "table/survey.hpp"
 
@@ -107,14 +108,13 @@ CentredBy centred_by(const Identification& found, const design::Design& design) 
   return column ? CentredBy::column : CentredBy::span;
 }
 
-void fill_identification(Identification found, Audit& audit) {
-  audit.rank = std::move(found.rank);
-  audit.kept = std::move(found.kept);
-  audit.left_out = std::move(found.left_out);
-  audit.relations = std::move(found.relations);
+void fill_identification(const Identification& found, Audit& audit) {
+  audit.rank = found.rank;
+  audit.kept = found.kept;
+  audit.left_out = found.left_out;
+  audit.relations = found.relations;
   audit.relations_omitted = found.relations_omitted;
-  audit.null_space = std::move(found.null_space);
-  audit.passes += found.passes;
+  audit.null_space = found.null_space;
   audit.centred_by = centred_by(found, audit.design);
   if (audit.centred_by == CentredBy::span) {
     for (const int column : found.constant_support) {
@@ -156,7 +156,7 @@ void fill_figures(const scan::Digest& digest, const std::vector<int>& constant_s
 
 void add_notes(double chance_of_a_miss, Audit& audit) {
   audit.notes = audit.design.notes;
-  if (chance_of_a_miss > 1e-6) {
+  if (chance_of_a_miss > exact::wanted_chance) {
     audit.notes.push_back({"search_cut",
                            fmt::format("The search for relations that only a few rows break was "
                                        "cut short for its cost: one that 1 % of the rows break "
@@ -279,35 +279,32 @@ Result<Audit> run(table::Source& source, const Request& request) {
   const RowTester tester = [&](const std::vector<exact::NullVector>& vectors) {
     return scan::test_on_all_rows(source, audit.schema, audit.design, vectors, pass);
   };
-  Result<Identification> found =
+  Result<Identification> identified =
       identify(audit.design, audit.schema, file_names, bound.digest, tester);
-  if (!found) return found.error();
+  if (!identified) return identified.error();
+  Identification& found = identified.value();
   EveryRow every_row(
       audit.design, audit.schema, file_names, bound.digest, [&](const scan::Examiner& examiner) {
         return scan::examine_all_rows(source, audit.schema, audit.design, examiner, pass);
       });
-  if (Result<void> done = judge_rounding(every_row, found.value()); !done) return done.error();
+  if (Result<void> done = judge_rounding(every_row, found); !done) return done.error();
   fill_source(source, audit);
   fill_from_digest(bound.digest, audit);
-  const std::vector<int> constant_support = found.value().constant_support;
-  const std::vector<int> lost = found.value().coefficients_lost;
-  const bool too_few_rows = found.value().too_few_rows;
-  const double chance_of_a_miss = found.value().chance_of_a_miss;
-  const std::vector<RareLevel> rare_cells = found.value().rare_cells;
-  fill_identification(std::move(found.value()), audit);
+  fill_identification(found, audit);
   audit.rare_levels = rare_levels(audit.design, audit.schema, bound.digest, bound.settled.left_out,
                                   audit.centred_by != CentredBy::none);
-  audit.rare_levels.insert(audit.rare_levels.end(), rare_cells.begin(), rare_cells.end());
-  fill_figures(bound.digest, constant_support, given.value(), audit);
-  const int passes_before = every_row.passes();
+  audit.rare_levels.insert(audit.rare_levels.end(), found.rare_cells.begin(),
+                           found.rare_cells.end());
+  fill_figures(bound.digest, found.constant_support, given.value(), audit);
   if (Result<void> done = judge_recorded_precision(every_row, audit); !done) return done.error();
-  audit.passes += every_row.passes() - passes_before;
+  audit.passes += found.passes + every_row.passes();
   spare_protected(audit);
-  if (Result<void> done = fill_contrasts(request.contrasts, too_few_rows, bound.digest, audit);
+  if (Result<void> done =
+          fill_contrasts(request.contrasts, found.too_few_rows, bound.digest, audit);
       !done)
     return done.error();
-  add_notes(chance_of_a_miss, audit);
-  audit.verdict = verdict_of(audit, lost);
+  add_notes(found.chance_of_a_miss, audit);
+  audit.verdict = verdict_of(audit, found.coefficients_lost);
   return audit;
 }
 

@@ -17,6 +17,7 @@ struct Evidence {
   const std::vector<ColumnSummary>& columns;
   std::uint64_t rows = 0;
   Sides sides;
+  std::string where;  ///< for the rows in which the relation holds; empty: all used
 };
 
 [[nodiscard]] Cause cause_of(const Evidence& evidence);

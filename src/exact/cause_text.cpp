@@ -42,6 +42,7 @@ std::string listed(const Evidence& e, const Terms& side) {
 }
 
 std::string in_every_row(const Evidence& e) {
+  if (!e.where.empty()) return e.where;
   return e.rows == 1 ? "in the only row used" : "in all " + grouped(e.rows) + " rows used";
 }
 
@@ -231,6 +232,12 @@ std::string of_other(const Evidence& e) {
   return which + " by this equation " + in_every_row(e) + ".";
 }
 
+/// Whose sentences have words of their own for the rows.
+bool speaks_of_every_row(Cause cause) {
+  return cause == Cause::empty_cell || cause == Cause::level_set || cause == Cause::nested_levels ||
+         cause == Cause::clock_identity || cause == Cause::too_few_rows;
+}
+
 }  // namespace
 
 std::string sentence_of(const Evidence& e, Cause cause) {
@@ -278,14 +285,15 @@ std::string word_of(Cause cause) {
 
 Relation describe(const design::Design& design, const table::Schema& schema,
                   const NullVector& vector, const std::vector<ColumnSummary>& columns,
-                  std::uint64_t rows) {
-  const Evidence evidence{design, schema, columns, rows, sides_of(design, vector)};
+                  std::uint64_t rows, const std::string& where) {
+  const Evidence evidence{design, schema, columns, rows, sides_of(design, vector), where};
   Relation relation;
   relation.coefficients = vector;
   // The constant alone cannot be zero; a relation without columns has no story.
   relation.cause = evidence.sides.columns() == 0 ? Cause::other : cause_of(evidence);
   relation.text = equation_of(design, evidence.sides, is_difference(evidence, relation.cause));
-  relation.cause_text = sentence_of(evidence, relation.cause);
+  if (where.empty() || !speaks_of_every_row(relation.cause))
+    relation.cause_text = sentence_of(evidence, relation.cause);
   for (std::size_t j = 0; j < design.columns.size(); ++j) {
     if (vector[j] != 0) relation.removable.push_back(static_cast<int>(j));
   }

@@ -19,7 +19,6 @@ namespace {
 
 constexpr std::size_t reservoir_rows = 4096;
 constexpr std::size_t most_samples = 200;
-constexpr double wanted_chance = 1e-6;
 constexpr double most_products = 3e8;
 /// Rows drawn beyond the number of columns: a random row set that is short of rank is followed up,
 /// and a few spare rows save most of that.

@@ -15,6 +15,9 @@
 
 namespace gramproof::exact {
 
+/// The search ends when a relation is missed with no more than this probability (methods: 2).
+inline constexpr double wanted_chance = 1e-6;
+
 struct HiddenSearch {
   std::vector<int> columns;          ///< independent exact design columns to search among
   std::uint64_t rows_used = 0;       ///< in the whole data
@@ -26,8 +29,8 @@ struct HiddenRelations {
   /// Single columns that are zero in all but a few rows are not listed, nor added to others.
   std::vector<NullVector> vectors;
   std::size_t samples = 0;  ///< random row sets drawn
-  /// That a relation violated in `most_violating` rows met a bad row in every set; at most 1e-6
-  /// unless the work had to be cut.
+  /// That a relation violated in `most_violating` rows met a bad row in every set; at most
+  /// wanted_chance unless the work had to be cut.
   double chance_of_a_miss = 0;
 };
 

@@ -55,6 +55,14 @@ bool lift_all(const RowSource& source, const std::vector<int>& order, const Elim
 
 }  // namespace
 
+std::vector<std::size_t> support_of(const NullVector& vector) {
+  std::vector<std::size_t> support;
+  for (std::size_t j = 0; j < vector.size(); ++j) {
+    if (vector[j] != 0) support.push_back(j);
+  }
+  return support;
+}
+
 void make_primitive(NullVector& vector) {
   Integer divisor = 0;
   for (const Integer& v : vector) {

@@ -27,6 +27,9 @@ using NullVector = std::vector<Integer>;
 /// Divides by the greatest common divisor and makes the first non-zero entry positive.
 void make_primitive(NullVector& vector);
 
+/// Places of the non-zero entries, ascending.
+[[nodiscard]] std::vector<std::size_t> support_of(const NullVector& vector);
+
 /// Rows of the design matrix (exact columns, then ones) as integers: each row multiplied by the
 /// least common multiple of its denominators, which changes neither rank nor null space. Columns
 /// that are not exact hold 0. For small matrices: every entry is a big integer.

@@ -3,6 +3,7 @@
 #include <optional>
 #include <utility>
 
+#include "exact/echelon.hpp"
 #include "exact/flint_types.hpp"
 #include "exact/modular.hpp"
 #include "exact/null_space.hpp"
@@ -31,14 +32,6 @@ Cost cost_of(const NullVector& vector) {
     cost.size += abs(v);
   }
   return cost;
-}
-
-std::vector<std::size_t> support_of(const NullVector& vector) {
-  std::vector<std::size_t> support;
-  for (std::size_t j = 0; j < vector.size(); ++j) {
-    if (vector[j] != 0) support.push_back(j);
-  }
-  return support;
 }
 
 /// By cost, then by place in the design: a total order, so that the result never depends on the
@@ -72,42 +65,12 @@ void sort_by_cost(const design::Design& design, std::vector<NullVector>& vectors
   for (Entry& entry : entries) vectors.push_back(std::move(entry.vector));
 }
 
-/// Independence of coordinates modulo the prime, one vector at a time.
-class Independence {
- public:
-  explicit Independence(const Modulus& field) : field_(field) {}
-
-  /// True, and remembered, if the vector is independent of those accepted before.
-  bool accept(std::vector<std::uint64_t> vector) {
-    for (const auto& [pivot, row] : rows_) {
-      if (vector[pivot] != 0) eliminate(vector, row, vector[pivot]);
-    }
-    std::size_t pivot = 0;
-    while (pivot < vector.size() && vector[pivot] == 0) ++pivot;
-    if (pivot == vector.size()) return false;
-    const std::uint64_t inverse = field_.inverse(vector[pivot]);
-    for (std::uint64_t& v : vector) v = field_.multiply(v, inverse);
-    rows_.emplace_back(pivot, std::move(vector));
-    return true;
-  }
-
- private:
-  void eliminate(std::vector<std::uint64_t>& vector, const std::vector<std::uint64_t>& row,
-                 std::uint64_t factor) const {
-    for (std::size_t i = 0; i < vector.size(); ++i) {
-      if (row[i] != 0) vector[i] = field_.subtract(vector[i], field_.multiply(factor, row[i]));
-    }
-  }
-  const Modulus& field_;
-  std::vector<std::pair<std::size_t, std::vector<std::uint64_t>>> rows_;
-};
-
 /// The cheapest basis that the pool holds: taking independent vectors in order of cost is optimal,
 /// linear independence being a matroid.
 std::vector<NullVector> cheapest_basis(const design::Design& design, const NullSpace& space,
                                        std::vector<NullVector> pool) {
   const Modulus field(prime);
-  Independence independence(field);
+  Echelon independence;
   sort_by_cost(design, pool);
   std::vector<NullVector> basis;
   for (NullVector& vector : pool) {

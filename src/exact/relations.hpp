@@ -61,10 +61,12 @@ struct ColumnSummary {
 [[nodiscard]] std::vector<NullVector> readable_basis(const design::Design& design,
                                                      const std::vector<NullVector>& null_vectors);
 
-/// Text, cause and removable columns of one relation. `rows`: rows used.
+/// Text, cause and removable columns of one relation. `rows`: rows used. `where`: a phrase for the
+/// rows in which it holds, if these are not all ("in all other rows"); a cause that speaks of every
+/// row in its own words then has no sentence.
 [[nodiscard]] Relation describe(const design::Design& design, const table::Schema& schema,
                                 const NullVector& vector, const std::vector<ColumnSummary>& columns,
-                                std::uint64_t rows);
+                                std::uint64_t rows, const std::string& where = "");
 
 /// Only the equation, as a person would write it: positive terms on both sides, a lone column or
 /// number to the right; three counts of time as a difference. More than eight terms on a side of a

@@ -3,9 +3,9 @@
 
 #include <algorithm>
 #include <cmath>
-#include <limits>
 #include <utility>
 
+#include "exact/echelon.hpp"
 #include "exact/fixed_point.hpp"
 #include "exact/modular.hpp"
 #include "exact/modulus.hpp"
@@ -43,24 +43,6 @@ std::vector<EntryBound> bounds_of(const design::Design& design, const table::Pie
 
 }  // namespace
 
-bool ResidualSpan::accept(std::vector<std::uint64_t> vector) {
-  const Modulus field(prime);
-  for (const auto& [pivot, row] : rows_) {
-    const std::uint64_t factor = vector[pivot];
-    if (factor == 0) continue;
-    for (std::size_t i = 0; i < vector.size(); ++i)
-      vector[i] = field.subtract(vector[i], field.multiply(factor, row[i]));
-  }
-  const auto first =
-      std::find_if(vector.begin(), vector.end(), [](std::uint64_t v) { return v != 0; });
-  if (first == vector.end()) return false;
-  const auto pivot = static_cast<std::size_t>(first - vector.begin());
-  const std::uint64_t inverse = field.inverse(*first);
-  for (std::uint64_t& v : vector) v = field.multiply(v, inverse);
-  rows_.emplace_back(pivot, std::move(vector));
-  return true;
-}
-
 ResidualRows residual_rows(const design::Design& design, const table::Piece& piece,
                            const std::vector<std::size_t>& rows,
                            const std::vector<NullVector>& vectors) {
@@ -80,7 +62,7 @@ ResidualRows residual_rows(const design::Design& design, const table::Piece& pie
   }
   const std::vector<std::uint64_t> values =
       residues_of_columns(design, piece, rows, columns, prime);
-  ResidualSpan span;
+  Echelon span;
   for (std::size_t i = 0; i < rows.size() && result.rows.size() < vectors.size(); ++i) {
     std::vector<std::uint64_t> residual;
     for (const std::vector<std::uint64_t>& own : coefficients) {

@@ -27,16 +27,6 @@ struct ResidualRows {
   std::vector<EntryBound> bounds;  ///< a design column; filled where not all vectors hold
 };
 
-/// An echelon basis of residuals modulo the prime.
-class ResidualSpan {
- public:
-  /// True, and remembered, if the vector is independent of those accepted before. O(width^2).
-  bool accept(std::vector<std::uint64_t> vector);
-
- private:
-  std::vector<std::pair<std::size_t, std::vector<std::uint64_t>>> rows_;
-};
-
 /// Tests the vectors on the named rows: in integers; where one is violated, the residuals of all
 /// rows modulo the prime are spanned. O(rows * non-zero coefficients), and as much again where a
 /// vector is violated.

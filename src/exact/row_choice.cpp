@@ -52,6 +52,7 @@ std::vector<std::size_t> RowChoice::support(std::size_t j) const {
     coefficients[static_cast<Index>(p)] = value / left_(row, static_cast<Index>(pivots[p]));
   }
   if (pivots.empty()) return result;
+  // A wrong guess costs time only: what is named here is proved or refused by intervals.
   const double floor = 1e-7 * coefficients.cwiseAbs().maxCoeff();
   for (std::size_t p = 0; p < pivots.size(); ++p) {
     if (std::abs(coefficients[static_cast<Index>(p)]) > floor) result.push_back(pivots[p]);

@@ -17,14 +17,6 @@ using Columns = std::map<std::size_t, std::optional<FixedColumn>>;
 /// Rows worked on at a time: the columns of a wide design then stay within a few megabytes.
 constexpr std::size_t rows_a_turn = 1024;
 
-std::vector<std::size_t> support_of(const NullVector& vector) {
-  std::vector<std::size_t> support;
-  for (std::size_t j = 0; j < vector.size(); ++j) {
-    if (vector[j] != 0) support.push_back(j);
-  }
-  return support;
-}
-
 Integer power_of_ten(std::int32_t exponent) {
   Integer result;
   mpz_ui_pow_ui(result.get_mpz_t(), 10, static_cast<unsigned long>(exponent));

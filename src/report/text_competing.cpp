@@ -78,17 +78,11 @@ std::vector<int> sharing_the_index(const audit::Audit& audit, double index) {
 }
 
 void write_near_relations(const audit::Audit& audit, Page& page) {
-  std::vector<const RelationFinding*> relations;
-  for (const RelationFinding& relation : audit.relations) {
-    if (relation.standing == Standing::near) relations.push_back(&relation);
-  }
+  const auto relations = standing_at(audit, Standing::near);
   const std::size_t told = std::min<std::size_t>(relations.size(), 3);
   for (std::size_t i = 0; i < told; ++i) {
     const RelationFinding& relation = *relations[i];
-    page.blank();
-    page.cut(fmt::format("{}. {}", i + 1, relation.text), 4,
-             fmt::format("... ({} in all)", counted(relation.terms.size(), "column", "columns")), 2,
-             3);
+    write_equation(relation, i + 1, page, 4);
     std::string text =
         fmt::format("Condition index {}.", index_text(audit, relation.condition_index));
     const std::vector<int> columns = sharing_the_index(audit, relation.condition_index);
@@ -188,8 +182,7 @@ void write_between_families(const audit::Audit& audit, Page& page) {
 
 void write_competing(const audit::Audit& audit, Page& page) {
   if (audit.conditioning.condition_indices.size() == 0) return;
-  const bool near = std::any_of(audit.relations.begin(), audit.relations.end(),
-                                [](const auto& r) { return r.standing == Standing::near; });
+  const bool near = !standing_at(audit, Standing::near).empty();
   page.heading(near ? "Columns that compete" : "How far the columns are from competing");
   if (near) {
     page.paragraph(

@@ -30,6 +30,13 @@ inline constexpr std::size_t most_notes_told = 6;
 [[nodiscard]] std::string listed(const std::vector<std::string>& items,
                                  std::size_t most = most_names);
 
+/// The relations of one standing, in the audit's order.
+[[nodiscard]] std::vector<const audit::RelationFinding*> standing_at(const audit::Audit& audit,
+                                                                     audit::Standing standing);
+/// "2. heat + light = total", cut after so many lines, behind a blank line.
+void write_equation(const audit::RelationFinding& relation, std::size_t number, Page& page,
+                    std::size_t most_lines = most_lines_of_an_equation);
+
 /// "`a`", "`a` or `b`": any one of them.
 [[nodiscard]] std::string alternatives(const audit::Audit& audit, const std::vector<int>& columns);
 /// "To end it, leave out `a` or `b`."; empty if nothing can be left out.

@@ -5,16 +5,13 @@
 #include <vector>
 
 #include "base/text.hpp"
+#include "report/number_text.hpp"
 #include "report/text_parts.hpp"
 
 namespace gramproof::report {
 
 void write_relations_within_recorded_precision(const audit::Audit& audit, Page& page) {
-  std::vector<const audit::RelationFinding*> relations;
-  for (const audit::RelationFinding& relation : audit.relations) {
-    if (relation.standing == audit::Standing::within_recorded_precision)
-      relations.push_back(&relation);
-  }
+  const auto relations = standing_at(audit, audit::Standing::within_recorded_precision);
   if (relations.empty()) return;
   page.heading(relations.size() == 1 ? "A relation that only rounding breaks"
                                      : "Relations that only rounding breaks");
@@ -26,14 +23,12 @@ void write_relations_within_recorded_precision(const audit::Audit& audit, Page& 
   const std::size_t told = std::min(relations.size(), most_relations_told);
   for (std::size_t i = 0; i < told; ++i) {
     const audit::RelationFinding& relation = *relations[i];
-    page.blank();
-    page.cut(fmt::format("{}. {}", i + 1, relation.text), most_lines_of_an_equation,
-             fmt::format("... ({} in all)", counted(relation.terms.size(), "column", "columns")), 2,
-             3);
+    write_equation(relation, i + 1, page);
     std::string text = fmt::format(
         "In each of the {} the two sides differ by no more than the steps in which the numbers are "
         "recorded can make, at most by {}.",
-        counted(relation.rows_holding, "row used", "rows used"), relation.largest_residual);
+        counted(relation.rows_holding, "row used", "rows used"),
+        rounded(relation.largest_residual_value, 2));
     if (!relation.cause_text.empty()) text += " " + relation.cause_text;
     page.paragraph(text, 5);
     page.paragraph(removable_sentence(audit, relation), 5);

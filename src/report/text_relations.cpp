@@ -11,21 +11,6 @@ namespace {
 using audit::RelationFinding;
 using audit::Standing;
 
-std::vector<const RelationFinding*> standing_at(const audit::Audit& audit, Standing standing) {
-  std::vector<const RelationFinding*> found;
-  for (const RelationFinding& relation : audit.relations) {
-    if (relation.standing == standing) found.push_back(&relation);
-  }
-  return found;
-}
-
-void write_equation(const RelationFinding& relation, std::size_t number, Page& page) {
-  page.blank();
-  page.cut(fmt::format("{}. {}", number, relation.text), most_lines_of_an_equation,
-           fmt::format("... ({} in all)", counted(relation.terms.size(), "column", "columns")), 2,
-           3);
-}
-
 /// The text with a full stop, whether or not it has one.
 std::string sentence(std::string text) {
   if (!text.empty() && text.back() != '.') text += '.';

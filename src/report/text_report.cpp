@@ -35,6 +35,23 @@ std::string names_of(const audit::Audit& audit, const std::vector<int>& columns,
   return listed(names, most);
 }
 
+std::vector<const audit::RelationFinding*> standing_at(const audit::Audit& audit,
+                                                       audit::Standing standing) {
+  std::vector<const audit::RelationFinding*> found;
+  for (const audit::RelationFinding& relation : audit.relations) {
+    if (relation.standing == standing) found.push_back(&relation);
+  }
+  return found;
+}
+
+void write_equation(const audit::RelationFinding& relation, std::size_t number, Page& page,
+                    std::size_t most_lines) {
+  page.blank();
+  page.cut(fmt::format("{}. {}", number, relation.text), most_lines,
+           fmt::format("... ({} in all)", counted(relation.terms.size(), "column", "columns")), 2,
+           3);
+}
+
 std::string alternatives(const audit::Audit& audit, const std::vector<int>& columns) {
   const std::string text = names_of(audit, columns);
   if (columns.size() < 2 || columns.size() > most_names + 1) return text;

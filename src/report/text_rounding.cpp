@@ -34,10 +34,7 @@ std::string doubles_sentence(const audit::Audit& audit) {
 }  // namespace
 
 void write_relations_within_rounding(const audit::Audit& audit, Page& page) {
-  std::vector<const RelationFinding*> relations;
-  for (const RelationFinding& relation : audit.relations) {
-    if (relation.standing == audit::Standing::within_rounding) relations.push_back(&relation);
-  }
+  const auto relations = standing_at(audit, audit::Standing::within_rounding);
   if (relations.empty()) return;
   page.heading(relations.size() == 1 ? "A relation that holds to 60 digits"
                                      : "Relations that hold to 60 digits");
@@ -50,10 +47,7 @@ void write_relations_within_rounding(const audit::Audit& audit, Page& page) {
   const std::size_t told = std::min(relations.size(), most_relations_told);
   for (std::size_t i = 0; i < told; ++i) {
     const RelationFinding& relation = *relations[i];
-    page.blank();
-    page.cut(fmt::format("{}. {}", i + 1, relation.text), most_lines_of_an_equation,
-             fmt::format("... ({} in all)", counted(relation.terms.size(), "column", "columns")), 2,
-             3);
+    write_equation(relation, i + 1, page);
     const std::string residual = relation.largest_residual_value == 0
                                      ? "agree to the last bit computed"
                                      : "differ by less than " + relation.largest_residual;

@@ -18,6 +18,7 @@ using audit::WhyColumn;
 
 constexpr const char* minus = "\u2212";
 constexpr const char* dot = "\u00b7";
+constexpr std::size_t most_digits_told = 24;
 
 /// A label that is a sum, or a product beside a factor, needs parentheses in a sum.
 std::string label_in_sum(const design::DesignColumn& column, bool beside_factor) {
@@ -32,7 +33,11 @@ std::string label_in_sum(const design::DesignColumn& column, bool beside_factor)
 std::string term_text(const audit::Audit& audit, int column, const mpq_class& size) {
   const auto& named = audit.design.columns.at(static_cast<std::size_t>(column));
   if (size == 1) return label_in_sum(named, false);
-  return exact::number_text(size) + dot + label_in_sum(named, true);
+  const std::string exact = exact::number_text(size);
+  // A fraction of a hundred digits tells a reader nothing but its size.
+  const std::string shown =
+      exact.size() <= most_digits_told ? exact : "\u2248" + rounded(size.get_d(), most_digits);
+  return shown + dot + label_in_sum(named, true);
 }
 
 void write_contrasts(const Why& why, Page& page) {
@@ -61,10 +66,7 @@ void write_contrasts(const Why& why, Page& page) {
                                             form_text(why.audit, contrast.estimates))),
               2);
   }
-  const bool proved = std::none_of(why.audit.relations.begin(), why.audit.relations.end(),
-                                   [](const audit::RelationFinding& relation) {
-                                     return relation.standing == audit::Standing::within_rounding;
-                                   });
+  const bool proved = standing_at(why.audit, audit::Standing::within_rounding).empty();
   page.paragraph(
       fmt::format("A sum can be estimated if and only if it is orthogonal to every relation "
                   "(Silvey 1969): proved in whole numbers{}.",
@@ -167,13 +169,6 @@ std::string form_text(const audit::Audit& audit, const exact::LinearForm& form) 
   }
   if (cut) text += fmt::format(" + \u2026 ({} more)", form.size() - told);
   return text;
-}
-
-std::string any_one_of(const audit::Audit& audit, const std::vector<int>& columns) {
-  const std::string text = names_of(audit, columns);
-  if (columns.size() < 2 || columns.size() > most_names + 1) return text;
-  const std::size_t last = text.rfind(" and ");
-  return text.substr(0, last) + " or " + text.substr(last + 5);
 }
 
 std::string text_why(const Why& why, const TextOptions& options) {

@@ -185,10 +185,9 @@ void write_what_could_go(const Why& why, const WhyColumn& asked, Page& page) {
                                any_protected ? " that keeps as many of the protected columns" : ""),
                    2);
   } else {
-    page.paragraph(fmt::format("{}{}. The fitted values are the same whichever goes; what the "
+    page.paragraph(fmt::format("{}. The fitted values are the same whichever goes; what the "
                                "remaining coefficients mean is not.",
-                               found.instead.size() == 1 ? "" : "Any one of ",
-                               any_one_of(audit, found.instead)),
+                               alternatives(audit, found.instead)),
                    2);
   }
   if (!beside.empty()) {

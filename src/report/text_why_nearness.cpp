@@ -147,10 +147,7 @@ void write_competitions(const audit::Audit& audit, const Nearness& near, Page& p
 /// Columns with logarithms and the like are proved independent by intervals, or not at all.
 std::string proof_sentence(const audit::Audit& audit, const WhyColumn& asked) {
   const std::vector<int>& unsettled = audit.rank.unsettled;
-  const bool beside_kept_only = std::any_of(audit.relations.begin(), audit.relations.end(),
-                                            [](const RelationFinding& relation) {
-                                              return relation.standing == Standing::within_rounding;
-                                            });
+  const bool beside_kept_only = !standing_at(audit, Standing::within_rounding).empty();
   const std::string rows = counted(audit.rows_used, "row", "rows");
   if (unsettled.empty()) {
     return fmt::format(

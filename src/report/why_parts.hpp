@@ -16,9 +16,6 @@ inline constexpr std::size_t most_terms_told = 12;
 /// "heat − 2.5·light + 1/3·(a + b)": labels as they are, without backticks; "0" for nothing.
 [[nodiscard]] std::string form_text(const audit::Audit& audit, const exact::LinearForm& form);
 
-/// "`a`", "`a` or `b`": any one of them.
-[[nodiscard]] std::string any_one_of(const audit::Audit& audit, const std::vector<int>& columns);
-
 // text_why_dependence.cpp: a column in an exact relation
 void write_dependence(const audit::Why& why, const audit::WhyColumn& asked, Page& page);
 void write_what_could_go(const audit::Why& why, const audit::WhyColumn& asked, Page& page);

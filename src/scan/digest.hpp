@@ -58,7 +58,8 @@ struct Digest {
   /// A deterministic sample of used rows: those with the smallest hash of their number, and for
   /// each design column the first two rows where it is not zero. Ascending row number, each row
   /// once.
-  /// Besides, where the fold could prove the null space, the rows that decide it.
+  /// Besides, where the fold could prove the null space, the rows that decide it. Rows that later
+  /// violate what the sample suggests are appended.
   table::Piece sample;
   SpanProof proof;
   /// Sum over used rows of hash(row) * x_row modulo exact::prime, a design column each (0 for

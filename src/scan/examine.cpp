@@ -3,7 +3,6 @@
 #include <algorithm>
 #include <utility>
 
-#include "base/ordered_work.hpp"
 #include "scan/reading.hpp"
 
 namespace gramproof::scan {
@@ -57,22 +56,14 @@ Result<std::vector<Examined>> examine_all_rows(table::Source& source, const tabl
                                                const design::Design& design,
                                                const Examiner& examiner,
                                                const PassOptions& options) {
-  if (Result<void> start = source.rewind(); !start) return start.error();
-  const PieceExpander expander(source, schema, design);
   std::vector<Examined> totals;
-  const auto work = [&](table::RawPiece raw) -> Result<Part> {
-    Result<ExpandedPiece> expanded = expander.expand(raw);
-    if (!expanded) return expanded.error();
-    return part_of(expanded.value().piece, expanded.value().block, examiner);
-  };
-  const auto consume = [&](Part part) -> Result<void> {
-    take(totals, std::move(part));
-    if (options.on_progress) options.on_progress(source.progress());
-    return {};
-  };
-  Result<void> run = run_ordered<table::RawPiece, Part>(
-      options.threads, [&] { return source.next(); }, work, consume);
-  if (!run) return run.error();
+  Result<void> passed = pass_over<Part>(
+      source, schema, design, options,
+      [&](const ExpandedPiece& expanded) {
+        return part_of(expanded.piece, expanded.block, examiner);
+      },
+      [&](Part part) { take(totals, std::move(part)); });
+  if (!passed) return passed.error();
   return totals;
 }
 

@@ -2,8 +2,9 @@
 
 #include <algorithm>
 #include <numeric>
-#include <unordered_set>
 #include <utility>
+
+#include "scan/sampler.hpp"
 
 namespace gramproof::scan {
 namespace {
@@ -34,20 +35,12 @@ bool are_cheap(const std::vector<exact::NullVector>& vectors, std::size_t column
   return nonzeros <= most_nonzeros_a_column * columns;
 }
 
-/// Both pieces' rows, each once, ascending.
-table::Piece united(table::Piece sample, const table::Piece& more) {
-  const std::unordered_set<std::uint64_t> known(sample.row.begin(), sample.row.end());
-  std::vector<std::size_t> fresh;
-  for (std::size_t i = 0; i < more.rows; ++i) {
-    if (!known.contains(more.row[i])) fresh.push_back(i);
-  }
-  if (fresh.empty()) return sample;
-  table::append(sample, table::gather(more, fresh));
+void sort_by_row(table::Piece& sample) {
   std::vector<std::size_t> order(sample.rows);
   std::iota(order.begin(), order.end(), std::size_t{0});
   std::sort(order.begin(), order.end(),
             [&](std::size_t a, std::size_t b) { return sample.row[a] < sample.row[b]; });
-  return table::gather(sample, order);
+  sample = table::gather(sample, order);
 }
 
 }  // namespace
@@ -83,7 +76,8 @@ void FoldProof::take(PieceProof part) {
 
 void FoldProof::finish(Digest& digest) const {
   if (!attempted_) return;
-  digest.sample = united(std::move(digest.sample), joining_);
+  join(digest.sample, joining_);
+  sort_by_row(digest.sample);
   digest.proof.sample_spans = true;
   digest.proof.all_hold = all_hold_;
   digest.proof.bounds = bounds_;

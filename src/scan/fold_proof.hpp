@@ -5,6 +5,7 @@
 #include <vector>
 
 #include "design/design.hpp"
+#include "exact/echelon.hpp"
 #include "exact/rank.hpp"
 #include "exact/residual_span.hpp"
 #include "scan/digest.hpp"
@@ -40,7 +41,7 @@ class FoldProof {
   bool attempted_ = false;
   std::vector<exact::NullVector> vectors_;
   table::Piece joining_;
-  exact::ResidualSpan span_;
+  exact::Echelon span_;
   bool all_hold_ = true;
   std::vector<exact::EntryBound> bounds_;
 };

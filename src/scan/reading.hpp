@@ -3,11 +3,14 @@
 #pragma once
 
 #include <string>
+#include <utility>
 #include <vector>
 
+#include "base/ordered_work.hpp"
 #include "base/result.hpp"
 #include "design/design.hpp"
 #include "design/rows.hpp"
+#include "scan/pass.hpp"
 #include "table/source.hpp"
 #include "table/survey.hpp"
 
@@ -33,5 +36,27 @@ class PieceExpander {
   std::vector<table::Want> wants_;
   std::vector<std::string> file_names_;
 };
+
+/// A further pass over the used rows: `work` makes a Part of an ExpandedPiece in any thread, `take`
+/// gets the parts in order of pieces. Errors: those of reading, parsing and design::expand.
+template <class Part, class Work, class Take>
+[[nodiscard]] Result<void> pass_over(table::Source& source, const table::Schema& schema,
+                                     const design::Design& design, const PassOptions& options,
+                                     Work&& work, Take&& take) {
+  if (Result<void> start = source.rewind(); !start) return start.error();
+  const PieceExpander expander(source, schema, design);
+  const auto expanded = [&](table::RawPiece raw) -> Result<Part> {
+    Result<ExpandedPiece> piece = expander.expand(raw);
+    if (!piece) return piece.error();
+    return work(piece.value());
+  };
+  const auto consume = [&](Part part) -> Result<void> {
+    take(std::move(part));
+    if (options.on_progress) options.on_progress(source.progress());
+    return {};
+  };
+  return run_ordered<table::RawPiece, Part>(
+      options.threads, [&] { return source.next(); }, expanded, consume);
+}
 
 }  // namespace gramproof::scan

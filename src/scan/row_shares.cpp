@@ -4,7 +4,6 @@
 #include <numeric>
 #include <utility>
 
-#include "base/ordered_work.hpp"
 #include "scan/reading.hpp"
 
 namespace gramproof::scan {
@@ -55,22 +54,14 @@ Result<std::vector<RowShares>> shares_of_rows(table::Source& source, const table
                                               const design::Design& design,
                                               const Matrix& directions, std::size_t most,
                                               const PassOptions& options) {
-  if (Result<void> start = source.rewind(); !start) return start.error();
-  const PieceExpander expander(source, schema, design);
   std::vector<RowShares> totals(static_cast<std::size_t>(directions.cols()));
-  const auto work = [&](table::RawPiece raw) -> Result<std::vector<RowShares>> {
-    Result<ExpandedPiece> expanded = expander.expand(raw);
-    if (!expanded) return expanded.error();
-    return shares_of_piece(expanded.value(), directions, most);
-  };
-  const auto consume = [&](std::vector<RowShares> part) -> Result<void> {
-    for (std::size_t d = 0; d < totals.size(); ++d) take(totals[d], std::move(part[d]), most);
-    if (options.on_progress) options.on_progress(source.progress());
-    return {};
-  };
-  Result<void> run = run_ordered<table::RawPiece, std::vector<RowShares>>(
-      options.threads, [&] { return source.next(); }, work, consume);
-  if (!run) return run.error();
+  Result<void> passed = pass_over<std::vector<RowShares>>(
+      source, schema, design, options,
+      [&](const ExpandedPiece& expanded) { return shares_of_piece(expanded, directions, most); },
+      [&](std::vector<RowShares> part) {
+        for (std::size_t d = 0; d < totals.size(); ++d) take(totals[d], std::move(part[d]), most);
+      });
+  if (!passed) return passed.error();
   for (RowShares& shares : totals) {
     for (SharedRow& row : shares.largest) row.share /= shares.total > 0 ? shares.total : 1;
   }

@@ -108,4 +108,14 @@ table::Piece Sampler::finish() {
   return std::move(pool_);
 }
 
+std::size_t join(table::Piece& sample, const table::Piece& more) {
+  const std::unordered_set<std::uint64_t> known(sample.row.begin(), sample.row.end());
+  std::vector<std::size_t> fresh;
+  for (std::size_t i = 0; i < more.rows; ++i) {
+    if (!known.contains(more.row[i])) fresh.push_back(i);
+  }
+  if (!fresh.empty()) table::append(sample, table::gather(more, fresh));
+  return fresh.size();
+}
+
 }  // namespace gramproof::scan

@@ -23,6 +23,10 @@ struct Candidates {
       first_nonzero;  ///< a design column: row numbers of its first non-zero rows here
 };
 
+/// Appends the rows of `more` that the sample does not hold yet, so that what is known by place in
+/// the sample stays true. Returns how many.
+std::size_t join(table::Piece& sample, const table::Piece& more);
+
 class Sampler {
  public:
   Sampler(std::size_t sample_rows, std::size_t columns);

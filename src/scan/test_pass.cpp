@@ -2,7 +2,6 @@
 #include <numeric>
 #include <utility>
 
-#include "base/ordered_work.hpp"
 #include "scan/pass.hpp"
 #include "scan/reading.hpp"
 
@@ -64,23 +63,17 @@ Result<std::vector<TestedVector>> test_on_all_rows(table::Source& source,
                                                    const design::Design& design,
                                                    const std::vector<exact::NullVector>& vectors,
                                                    const PassOptions& options) {
-  if (Result<void> start = source.rewind(); !start) return start.error();
-  const PieceExpander expander(source, schema, design);
   std::vector<TestedVector> totals(vectors.size());
-  const auto work = [&](table::RawPiece raw) -> Result<PieceTest> {
-    Result<ExpandedPiece> expanded = expander.expand(raw);
-    if (!expanded) return expanded.error();
-    return test_piece(design, expanded.value().piece, expanded.value().block.rows, vectors);
-  };
-  const auto consume = [&](PieceTest part) -> Result<void> {
-    for (std::size_t i = 0; i < totals.size(); ++i)
-      take(totals[i], part.tests[i], part.violators[i]);
-    if (options.on_progress) options.on_progress(source.progress());
-    return {};
-  };
-  Result<void> run = run_ordered<table::RawPiece, PieceTest>(
-      options.threads, [&] { return source.next(); }, work, consume);
-  if (!run) return run.error();
+  Result<void> passed = pass_over<PieceTest>(
+      source, schema, design, options,
+      [&](const ExpandedPiece& expanded) {
+        return test_piece(design, expanded.piece, expanded.block.rows, vectors);
+      },
+      [&](const PieceTest& part) {
+        for (std::size_t i = 0; i < totals.size(); ++i)
+          take(totals[i], part.tests[i], part.violators[i]);
+      });
+  if (!passed) return passed.error();
   return totals;
 }
 

@@ -3,49 +3,15 @@
 #include <doctest/doctest.h>
 #include <fmt/format.h>
 
-#include <algorithm>
-#include <functional>
 #include <string>
 #include <vector>
 
-#include "audit/run.hpp"
-#include "support/random_numbers.hpp"
-#include "support/scratch.hpp"
+#include "audit/audited.hpp"
 
 namespace gramproof::audit {
 namespace {
 
 using test::Random;
-using test::Scratch;
-
-Audit audited(const std::string& text, const std::string& design,
-              std::vector<RecordedStep> recorded = {}) {
-  const Scratch scratch;
-  Result<table::Source> source = table::Source::open({scratch.file("data.csv", text)}, {});
-  REQUIRE(source);
-  Request request;
-  request.design.design = design;
-  request.recorded = std::move(recorded);
-  Result<Audit> result = run(source.value(), request);
-  if (!result) FAIL(to_line(result.error()));
-  return std::move(result.value());
-}
-
-std::string rows(const std::string& header, int count, std::uint64_t seed,
-                 const std::function<std::string(int, Random&)>& row) {
-  Random random(seed);
-  std::string text = header + "\n";
-  for (int i = 0; i < count; ++i) text += row(i, random) + "\n";
-  return text;
-}
-
-std::vector<const RelationFinding*> all_of(const Audit& audit, Standing standing) {
-  std::vector<const RelationFinding*> found;
-  for (const RelationFinding& relation : audit.relations) {
-    if (relation.standing == standing) found.push_back(&relation);
-  }
-  return found;
-}
 
 /// men + women = all but in the rows named, which are off by what is said.
 std::string headcount(int count, const std::vector<std::pair<int, int>>& off) {
@@ -68,7 +34,7 @@ TEST_CASE("five rows off by one and one by 530 are one finding") {
     CAPTURE(count);
     const Audit audit = audited(headcount(count, off), "constant, men, women, all, x");
     CHECK(audit.rank.nullity == 0);
-    const auto found = all_of(audit, Standing::exact_except);
+    const auto found = relations_at(audit, Standing::exact_except);
     REQUIRE(found.size() == 1);
     CHECK(found[0]->text == "men + women = all");
     CHECK(found[0]->rows_violating == off.size());
@@ -92,7 +58,7 @@ TEST_CASE("an exact relation beside one with exceptions: both are told") {
   });
   const Audit audit = audited(text, "constant, a, b, c, d, e");
   CHECK(audit.rank.nullity == 1);
-  const auto found = all_of(audit, Standing::exact_except);
+  const auto found = relations_at(audit, Standing::exact_except);
   REQUIRE(found.size() == 1);
   CHECK(found[0]->text == "a + d = e");
   CHECK(found[0]->rows_violating == 2);
@@ -102,7 +68,7 @@ TEST_CASE("more rows than one in a hundred break it: no relation") {
   std::vector<std::pair<int, int>> off;
   for (int i = 0; i < 30; ++i) off.emplace_back(20 * i, 1);
   const Audit audit = audited(headcount(1000, off), "constant, men, women, all, x");
-  CHECK(all_of(audit, Standing::exact_except).empty());
+  CHECK(relations_at(audit, Standing::exact_except).empty());
 }
 
 TEST_CASE("cells of an interaction are not accused for being small") {
@@ -126,11 +92,11 @@ TEST_CASE("cells of an interaction are not accused for being small") {
       "constant, levels(region), levels(phase, against = late), levels(region) * levels(phase, "
       "against = late), x";
   const Audit twenty = audited(table(20), design);
-  CHECK(all_of(twenty, Standing::exact_except).empty());
+  CHECK(relations_at(twenty, Standing::exact_except).empty());
   CHECK(twenty.rare_levels.empty());
   // Four rows are few: the coefficient of the west rests on them. A caution, as for any rare level.
   const Audit four = audited(table(4), design);
-  CHECK(all_of(four, Standing::exact_except).empty());
+  CHECK(relations_at(four, Standing::exact_except).empty());
   REQUIRE(four.rare_levels.size() == 1);
   CHECK(four.rare_levels[0].label == "[region = west] * [phase = late]");
   CHECK(four.rare_levels[0].rows == 4);
@@ -146,7 +112,7 @@ TEST_CASE("shares that sum to 100 up to rounding, and a length in two rounded un
   });
   const Audit audit = audited(text, "constant, rent, food, other, feet, metres, z");
   CHECK(audit.rank.nullity == 0);
-  const auto found = all_of(audit, Standing::within_recorded_precision);
+  const auto found = relations_at(audit, Standing::within_recorded_precision);
   REQUIRE(found.size() == 2);
   for (const RelationFinding* relation : found) {
     CAPTURE(relation->text);
@@ -156,13 +122,15 @@ TEST_CASE("shares that sum to 100 up to rounding, and a length in two rounded un
     CHECK(relation->largest_residual_value <= 0.15 * 1.02);
     CHECK(relation->largest_residual_value > 0.04);
   }
-  CHECK(all_of(audit, Standing::near).empty());
+  CHECK(relations_at(audit, Standing::near).empty());
   CHECK(audit.verdict.grounds.recorded.grade == Grade::fail);
   // Said to be exact, the same numbers are merely near.
-  const Audit exact = audited(text, "constant, rent, food, other, feet, metres, z",
-                              {{"rent", 0}, {"food", 0}, {"other", 0}, {"feet", 0}, {"metres", 0}});
-  CHECK(all_of(exact, Standing::within_recorded_precision).empty());
-  CHECK(all_of(exact, Standing::near).size() == 2);
+  Request request;
+  request.design.design = "constant, rent, food, other, feet, metres, z";
+  request.recorded = {{"rent", 0}, {"food", 0}, {"other", 0}, {"feet", 0}, {"metres", 0}};
+  const Audit exact = audited(text, request);
+  CHECK(relations_at(exact, Standing::within_recorded_precision).empty());
+  CHECK(relations_at(exact, Standing::near).size() == 2);
 }
 
 TEST_CASE("one row beyond rounding: near, not within it") {
@@ -173,9 +141,11 @@ TEST_CASE("one row beyond rounding: near, not within it") {
                          random.whole(0, 99));
     });
   };
-  CHECK(all_of(audited(text(0), "constant, feet, metres, z"), Standing::within_recorded_precision)
+  CHECK(relations_at(audited(text(0), "constant, feet, metres, z"),
+                     Standing::within_recorded_precision)
             .size() == 1);
-  CHECK(all_of(audited(text(0.3), "constant, feet, metres, z"), Standing::within_recorded_precision)
+  CHECK(relations_at(audited(text(0.3), "constant, feet, metres, z"),
+                     Standing::within_recorded_precision)
             .empty());
 }
 

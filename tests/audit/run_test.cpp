@@ -8,52 +8,16 @@
 #include <string>
 #include <vector>
 
-#include "audit/run.hpp"
-#include "support/random_numbers.hpp"
-#include "support/scratch.hpp"
+#include "audit/audited.hpp"
 
 namespace gramproof::audit {
 namespace {
 
 using test::Random;
-using test::Scratch;
-
-Result<Audit> audited(const std::string& text, const Request& request) {
-  const Scratch scratch;
-  Result<table::Source> source = table::Source::open({scratch.file("data.csv", text)}, {});
-  REQUIRE(source);
-  return run(source.value(), request);
-}
-
-Audit audited(const std::string& text, const std::string& design) {
-  Request request;
-  request.design.design = design;
-  Result<Audit> result = audited(text, request);
-  if (!result) FAIL(to_line(result.error()));
-  return std::move(result.value());
-}
-
-/// Rows written by a function of the row number and a seeded source.
-std::string rows(const std::string& header, int count, std::uint64_t seed,
-                 const std::function<std::string(int, Random&)>& row) {
-  Random random(seed);
-  std::string text = header + "\n";
-  for (int i = 0; i < count; ++i) text += row(i, random) + "\n";
-  return text;
-}
-
-std::vector<std::string> labels(const Audit& audit, const std::vector<int>& columns) {
-  std::vector<std::string> names;
-  for (const int j : columns)
-    names.push_back(audit.design.columns[static_cast<std::size_t>(j)].label);
-  return names;
-}
 
 const RelationFinding* first_of(const Audit& audit, Standing standing) {
-  for (const RelationFinding& relation : audit.relations) {
-    if (relation.standing == standing) return &relation;
-  }
-  return nullptr;
+  const auto found = relations_at(audit, standing);
+  return found.empty() ? nullptr : found.front();
 }
 
 std::string panel(int count, std::uint64_t seed) {
@@ -278,7 +242,7 @@ TEST_CASE("focus: protection does not cancel it, and controls are not accused") 
   for (const std::vector<std::string>& protect :
        {std::vector<std::string>{}, std::vector<std::string>{"f"}}) {
     request.design.protect = protect;
-    const Result<Audit> audit = audited(text, request);
+    const Result<Audit> audit = tried(text, request);
     REQUIRE(audit);
     const Ground& ground = audit.value().verdict.grounds.informative;
     CAPTURE(ground.finding);
@@ -289,7 +253,7 @@ TEST_CASE("focus: protection does not cancel it, and controls are not accused") 
   }
   request.design.focus = {"h"};
   request.design.protect = {};
-  const Result<Audit> audit = audited(text, request);
+  const Result<Audit> audit = tried(text, request);
   REQUIRE(audit);
   CHECK(audit.value().verdict.grounds.informative.grade == Grade::pass);
   CHECK(audit.value().verdict.grounds.informative.finding.find("not graded") != std::string::npos);
@@ -299,7 +263,7 @@ TEST_CASE("fewer rows than columns through functions: no single coefficient is c
   Request request;
   request.design.design = "constant, a, b, log(a), log(b), sqrt(a)";
   request.contrasts = {"a", "sqrt(a)"};
-  const Result<Audit> audit = audited("a,b\n1.5,2\n2,3.5\n3,5.1\n4,1.2\n", request);
+  const Result<Audit> audit = tried("a,b\n1.5,2\n2,3.5\n3,5.1\n4,1.2\n", request);
   REQUIRE(audit);
   CHECK(audit.value().rank.rank == 4);
   for (const ContrastFinding& contrast : audit.value().contrasts) CHECK_FALSE(contrast.estimable);
@@ -313,11 +277,11 @@ TEST_CASE("cumulative brackets are no level set: the column written last is left
   });
   Request request;
   request.design.design = "constant, [x >= 5], [x >= 10], band, y";
-  Result<Audit> audit = audited(text, request);
+  Result<Audit> audit = tried(text, request);
   REQUIRE(audit);
   CHECK(labels(audit.value(), audit.value().left_out) == std::vector<std::string>{"band"});
   request.design.protect = {"band"};
-  audit = audited(text, request);
+  audit = tried(text, request);
   REQUIRE(audit);
   for (const std::string& name : labels(audit.value(), audit.value().relations.at(0).removable))
     CHECK(name != "band");
@@ -385,7 +349,7 @@ TEST_CASE("contrasts: estimable or not, decided exactly") {
   Request request;
   request.design.design = "constant, north, south, x";
   request.contrasts = {"north - south", "north", "2*x"};
-  const Result<Audit> result = audited(text, request);
+  const Result<Audit> result = tried(text, request);
   REQUIRE(result);
   const std::vector<ContrastFinding>& contrasts = result.value().contrasts;
   REQUIRE(contrasts.size() == 3);
@@ -406,12 +370,12 @@ TEST_CASE("protected and focused columns are kept before the others") {
   Request request;
   request.design.design = "constant, a, b";
   request.design.focus = {"b"};
-  Result<Audit> result = audited(text, request);
+  Result<Audit> result = tried(text, request);
   REQUIRE(result);
   CHECK(labels(result.value(), result.value().left_out) == std::vector<std::string>{"a"});
   request.design.focus = {"b"};
   request.design.protect = {"a"};
-  result = audited(text, request);
+  result = tried(text, request);
   REQUIRE(result);
   CHECK(labels(result.value(), result.value().left_out) == std::vector<std::string>{"b"});
 }
@@ -427,7 +391,7 @@ TEST_CASE("more columns than rows, one row, and no row at all") {
   Request request;
   request.design.design = "constant, a";
   request.design.rows = "a > 5";
-  const Result<Audit> none = audited("a\n3\n4\n", request);
+  const Result<Audit> none = tried("a\n3\n4\n", request);
   REQUIRE_FALSE(none);
   CHECK(none.error().what == "none of the 2 rows can be used: not kept by --rows: 2");
 }
@@ -437,7 +401,7 @@ TEST_CASE("a design larger than --memory is refused before anything is allocated
   request.design.design = "constant, levels(x)";
   request.memory = 1 << 20;
   const Result<Audit> result =
-      audited(rows("x", 600, 16, [](int i, Random&) { return std::to_string(i % 300); }), request);
+      tried(rows("x", 600, 16, [](int i, Random&) { return std::to_string(i % 300); }), request);
   REQUIRE_FALSE(result);
   CHECK(to_line(result.error()).find("--memory") != std::string::npos);
   CHECK(most_columns(memory_needed(250, 2), 2) == 250);

@@ -1,28 +1,12 @@
 // What people get wrong, and the one line that tells them: where, what, what to do.
 #include <doctest/doctest.h>
-#include <zlib.h>
 
 #include "mistakes.hpp"
 #include "small_tables.hpp"
+#include "support/gzip.hpp"
 
 namespace gramproof::test {
 namespace {
-
-std::string gzipped(const std::string& text) {
-  std::string bytes(text.size() + 1000, '\0');
-  z_stream stream{};
-  constexpr int gzip_header = 16;  // added to the window bits (zlib.h)
-  REQUIRE(deflateInit2(&stream, 6, Z_DEFLATED, MAX_WBITS + gzip_header, 8, Z_DEFAULT_STRATEGY) ==
-          Z_OK);
-  stream.next_in = reinterpret_cast<Bytef*>(const_cast<char*>(text.data()));
-  stream.avail_in = static_cast<uInt>(text.size());
-  stream.next_out = reinterpret_cast<Bytef*>(bytes.data());
-  stream.avail_out = static_cast<uInt>(bytes.size());
-  REQUIRE(deflate(&stream, Z_FINISH) == Z_STREAM_END);
-  bytes.resize(stream.total_out);
-  deflateEnd(&stream);
-  return bytes;
-}
 
 const std::vector<Mistake> names_and_files = {
     {"missing file",
@@ -226,7 +210,7 @@ TEST_CASE("a fault in the data is named with its place") {
 TEST_CASE("a truncated .gz file") {
   const Scratch folder;
   write_files(folder);
-  const std::string whole = gzipped(harbour_table());
+  const std::string whole = test::gzip(harbour_table());
   const std::string half = whole.substr(0, whole.size() / 2);
   folder.file("cut.csv.gz", half);
   check_mistakes(folder,

@@ -11,17 +11,6 @@ using Rows = std::vector<std::vector<Integer>>;
 
 namespace {
 
-test::Matrix cells_of(const Rows& rows) {
-  std::vector<std::string> names;
-  for (std::size_t j = 0; j < rows.front().size(); ++j) names.push_back("x" + std::to_string(j));
-  std::vector<std::vector<std::string>> cells;
-  for (const auto& row : rows) {
-    cells.emplace_back();
-    for (const Integer& value : row) cells.back().push_back(value.get_str());
-  }
-  return test::matrix_of(names, cells);
-}
-
 /// Row numbers of the rows found, by the product.
 std::vector<std::uint64_t> found_rows(const test::Matrix& all, const table::Piece& sample,
                                       exact::SampleRank& rank,
@@ -70,7 +59,7 @@ TEST_CASE("rows without which the design loses rank, beside exact relations") {
       for (auto& row : rows) row[a] = 2 * row[b];
       rows[static_cast<std::size_t>(random.whole(0, 29))][a] += 530;
     }
-    const test::Matrix all = cells_of(rows);
+    const test::Matrix all = test::matrix_of(rows);
     exact::SampleRank rank;
     std::vector<std::size_t> essential;
     const auto numbers = found_rows(all, all.piece, rank, essential);
@@ -94,7 +83,7 @@ TEST_CASE("rows without which the design loses rank, beside exact relations") {
 TEST_CASE("a sample finds the row when the sample holds it") {
   Rows rows;
   for (int i = 0; i < 500; ++i) rows.push_back({1, i, i * i % 17, 2 * i + 1 + (i == 77 ? 530 : 0)});
-  const test::Matrix all = cells_of(rows);
+  const test::Matrix all = test::matrix_of(rows);
   std::vector<std::size_t> chosen;
   for (std::size_t i = 0; i < 500; i += 7) chosen.push_back(i);
   const table::Piece sample = table::gather(all.piece, chosen);
@@ -106,7 +95,7 @@ TEST_CASE("a sample finds the row when the sample holds it") {
 }
 
 TEST_CASE("a matrix without rows and one without rank have no such rows") {
-  const test::Matrix zero = cells_of({{0, 0}, {0, 0}});
+  const test::Matrix zero = test::matrix_of({{0, 0}, {0, 0}});
   exact::SampleRank rank;
   std::vector<std::size_t> essential;
   CHECK(found_rows(zero, zero.piece, rank, essential).empty());

@@ -36,17 +36,6 @@ Planted planted_but_for(test::Random& random, std::size_t n, std::size_t k,
   return made;
 }
 
-test::Matrix matrix_of(const std::vector<std::vector<Integer>>& rows) {
-  std::vector<std::string> names;
-  for (std::size_t j = 0; j < rows.front().size(); ++j) names.push_back("x" + std::to_string(j));
-  std::vector<std::vector<std::string>> cells;
-  for (const auto& row : rows) {
-    cells.emplace_back();
-    for (const Integer& value : row) cells.back().push_back(value.get_str());
-  }
-  return test::matrix_of(names, cells);
-}
-
 exact::HiddenRelations search(const test::Matrix& matrix, std::uint64_t most_violating) {
   const exact::SampleRank rank = exact::rank_of_sample(matrix.design, matrix.piece, matrix.order());
   return exact::hidden_relations(matrix.design, matrix.piece,
@@ -63,7 +52,7 @@ TEST_CASE("a relation that several rows break is found") {
     std::vector<std::size_t> bad;
     for (std::size_t i = 0; i < 1 + seed % 5; ++i) bad.push_back(7 + 13 * i);
     const Planted made = planted_but_for(random, n, k, bad);
-    const exact::HiddenRelations found = search(matrix_of(made.rows), 5);
+    const exact::HiddenRelations found = search(test::matrix_of(made.rows), 5);
     CHECK(found.chance_of_a_miss <= 1e-6);
     REQUIRE(found.vectors.size() == 1);
     CHECK(found.vectors.front() == made.relation);
@@ -78,7 +67,7 @@ TEST_CASE("two relations with bad rows of their own come apart") {
     auto& row = first.rows[i];
     row.emplace_back(row[3] + row[4] + (i == 200 || i == 300 ? 5 : 0));
   }
-  const exact::HiddenRelations found = search(matrix_of(first.rows), 5);
+  const exact::HiddenRelations found = search(test::matrix_of(first.rows), 5);
   first.relation.insert(first.relation.end() - 1, 0);
   const NullVector second = {0, 0, 0, 1, 1, 0, -1, 0};
   for (const NullVector& wanted : {first.relation, second}) {
@@ -97,7 +86,7 @@ TEST_CASE("columns without a hidden relation give none") {
       for (int j = 0; j < 6; ++j) rows.back().emplace_back(random.whole(-9, 9));
       rows.back().emplace_back(i % 100 == 0 ? 1 : 0);
     }
-    CHECK(search(matrix_of(rows), 5).vectors.empty());
+    CHECK(search(test::matrix_of(rows), 5).vectors.empty());
   }
 }
 
@@ -105,5 +94,5 @@ TEST_CASE("a relation that more rows break than allowed is none") {
   test::Random random(5);
   std::vector<std::size_t> bad;
   for (std::size_t i = 0; i < 40; ++i) bad.push_back(5 * i);
-  CHECK(search(matrix_of(planted_but_for(random, 300, 6, bad).rows), 5).vectors.empty());
+  CHECK(search(test::matrix_of(planted_but_for(random, 300, 6, bad).rows), 5).vectors.empty());
 }

@@ -83,6 +83,17 @@ Matrix matrix_of(const std::vector<std::string>& names,
   return matrix;
 }
 
+Matrix matrix_of(const std::vector<std::vector<exact::Integer>>& rows) {
+  std::vector<std::string> names;
+  for (std::size_t j = 0; j < rows.front().size(); ++j) names.push_back("x" + std::to_string(j));
+  std::vector<std::vector<std::string>> cells;
+  for (const auto& row : rows) {
+    cells.emplace_back();
+    for (const exact::Integer& value : row) cells.back().push_back(value.get_str());
+  }
+  return matrix_of(names, cells);
+}
+
 Csv read_csv(const std::string& name) {
   std::ifstream file(std::string(GRAMPROOF_FIXTURES) + "/" + name);
   if (!file) throw std::runtime_error("no fixture " + name);

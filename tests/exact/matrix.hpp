@@ -28,6 +28,9 @@ struct Matrix {
 [[nodiscard]] Matrix matrix_of(const std::vector<std::string>& names,
                                const std::vector<std::vector<std::string>>& rows);
 
+/// Columns x0, x1, ... of integers.
+[[nodiscard]] Matrix matrix_of(const std::vector<std::vector<exact::Integer>>& rows);
+
 /// A CSV file of plain numbers below GRAMPROOF_FIXTURES.
 struct Csv {
   std::vector<std::string> names;

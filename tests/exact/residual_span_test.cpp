@@ -8,31 +8,17 @@ using namespace gramproof;
 using exact::Integer;
 using exact::NullVector;
 
-namespace {
-
-test::Matrix matrix_of(const std::vector<std::vector<Integer>>& rows) {
-  std::vector<std::string> names;
-  for (std::size_t j = 0; j < rows.front().size(); ++j) names.push_back("x" + std::to_string(j));
-  std::vector<std::vector<std::string>> cells;
-  for (const auto& row : rows) {
-    cells.emplace_back();
-    for (const Integer& value : row) cells.back().push_back(value.get_str());
-  }
-  return test::matrix_of(names, cells);
-}
-
-}  // namespace
-
 TEST_CASE("the rows of the residual span decide the null space of all rows") {
   for (std::uint64_t seed = 1; seed <= 40; ++seed) {
     CAPTURE(seed);
     test::Random random(seed);
     const std::size_t k = 4 + seed % 9;
     const auto rows = test::planted(random, 80, k, 1 + seed % 3, 20);
-    const test::Matrix all = matrix_of(rows);
+    const test::Matrix all = test::matrix_of(rows);
     // So few rows that most null vectors are false.
     const std::size_t few = 1 + seed % k;
-    const test::Matrix first = matrix_of({rows.begin(), rows.begin() + static_cast<long>(few)});
+    const test::Matrix first =
+        test::matrix_of({rows.begin(), rows.begin() + static_cast<long>(few)});
     const exact::SampleRank start = exact::rank_of_sample(first.design, first.piece, first.order());
     const exact::ResidualRows found =
         exact::residual_rows(all.design, all.piece, all.all_rows(), start.null_vectors);
@@ -47,7 +33,7 @@ TEST_CASE("the rows of the residual span decide the null space of all rows") {
 TEST_CASE("vectors that hold everywhere are proved without a residual") {
   test::Random random(3);
   const auto rows = test::planted(random, 60, 7, 2, 9);
-  const test::Matrix all = matrix_of(rows);
+  const test::Matrix all = test::matrix_of(rows);
   const exact::SampleRank rank = exact::rank_of_sample(all.design, all.piece, all.order());
   const exact::ResidualRows found =
       exact::residual_rows(all.design, all.piece, all.all_rows(), rank.null_vectors);

@@ -27,13 +27,7 @@ void try_length(std::uint64_t seed, Tally& tally) {
   limits.largest = 12;
   const PlantedDesign planted = planted_design(random, limits);
   const std::size_t k = planted.rows.front().size();
-  exact::ExactRows sample;
-  sample.rows = planted.rows;
-  sample.number.resize(planted.rows.size());
-  std::iota(sample.number.begin(), sample.number.end(), 1);
-  std::vector<int> order(k);
-  std::iota(order.begin(), order.end(), 0);
-  std::vector<exact::NullVector> vectors = exact::rank_of_sample(sample, order).null_vectors;
+  std::vector<exact::NullVector> vectors = rank_of(planted).null_vectors;
   for (exact::NullVector& vector : vectors) vector.resize(k + 1);
   const std::size_t shown = nonzero_entries(exact::readable_basis(named_columns(k), vectors));
   const std::size_t as_planted = nonzero_entries(planted.relations);

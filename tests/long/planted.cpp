@@ -83,4 +83,14 @@ PlantedDesign planted_design(Random& random, const PlantedLimits& limits) {
   return design;
 }
 
+exact::SampleRank rank_of(const PlantedDesign& planted) {
+  exact::ExactRows sample;
+  sample.rows = planted.rows;
+  sample.number.resize(planted.rows.size());
+  std::iota(sample.number.begin(), sample.number.end(), 1);
+  std::vector<int> order(planted.rows.front().size());
+  std::iota(order.begin(), order.end(), 0);
+  return exact::rank_of_sample(sample, order);
+}
+
 }  // namespace gramproof::test

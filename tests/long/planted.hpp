@@ -3,6 +3,7 @@
 
 #include <cstdint>
 
+#include "exact/rank.hpp"
 #include "support/plain_elimination.hpp"
 #include "support/random_numbers.hpp"
 
@@ -25,5 +26,8 @@ struct PlantedLimits {
 /// drawn for the rest and multiplied until all entries are whole. k + 3 to k + 40 rows: that their
 /// rank falls short of the free columns has a probability below 1e-9. Columns are shuffled.
 [[nodiscard]] PlantedDesign planted_design(Random& random, const PlantedLimits& limits);
+
+/// Rank and null space of its rows by the product.
+[[nodiscard]] exact::SampleRank rank_of(const PlantedDesign& planted);
 
 }  // namespace gramproof::test

@@ -69,13 +69,7 @@ std::string fault_of_audit(const PlantedDesign& planted) {
 
 std::string fault_of_proof(const PlantedDesign& planted) {
   const std::size_t k = planted.rows.front().size();
-  exact::ExactRows sample;
-  sample.rows = planted.rows;
-  sample.number.resize(planted.rows.size());
-  std::iota(sample.number.begin(), sample.number.end(), 1);
-  std::vector<int> order(k);
-  std::iota(order.begin(), order.end(), 0);
-  const exact::SampleRank rank = exact::rank_of_sample(sample, order);
+  const exact::SampleRank rank = rank_of(planted);
   const IntegerVectors proved = on_columns(rank.null_vectors, k);
   if (rank.pivot_columns.size() + planted.relations.size() != k) {
     return "the rank is " + std::to_string(rank.pivot_columns.size());

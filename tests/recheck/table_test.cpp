@@ -1,12 +1,12 @@
 #include "recheck/table.hpp"
 
 #include <doctest/doctest.h>
-#include <zlib.h>
 #include <zstd.h>
 
 #include <string>
 #include <vector>
 
+#include "support/gzip.hpp"
 #include "support/scratch.hpp"
 
 using gramproof::Result;
@@ -31,21 +31,6 @@ std::string read(const std::vector<std::string>& files, char separator,
     for (std::size_t i = 0; i < row.cells.size(); ++i) text += (i == 0 ? "" : "|") + row.cells[i];
     text += " ";
   }
-}
-
-std::string gzipped(const std::string& text) {
-  z_stream stream{};
-  REQUIRE(deflateInit2(&stream, 6, Z_DEFLATED, 15 + 16, 8, Z_DEFAULT_STRATEGY) == Z_OK);
-  std::string bytes(deflateBound(&stream, text.size()), '\0');
-  std::string input = text;
-  stream.next_in = reinterpret_cast<Bytef*>(input.data());
-  stream.avail_in = static_cast<uInt>(input.size());
-  stream.next_out = reinterpret_cast<Bytef*>(bytes.data());
-  stream.avail_out = static_cast<uInt>(bytes.size());
-  REQUIRE(deflate(&stream, Z_FINISH) == Z_STREAM_END);
-  bytes.resize(stream.total_out);
-  deflateEnd(&stream);
-  return bytes;
 }
 
 std::string zstandard(const std::string& text) {
@@ -144,9 +129,10 @@ TEST_CASE("delimited text: compressed files are recognised by their first bytes"
     std::string why;
   };
   const std::vector<Case> cases = {
-      {gzipped(text), "gzip"},
+      {gramproof::test::gzip(text), "gzip"},
       {zstandard(text), "Zstandard"},
-      {gzipped(text.substr(0, half)) + gzipped(text.substr(half)), "two members"},
+      {gramproof::test::gzip(text.substr(0, half)) + gramproof::test::gzip(text.substr(half)),
+       "two members"},
       {zstandard(text.substr(0, half)) + zstandard(text.substr(half)), "two frames"},
   };
   for (const Case& one : cases) {
@@ -156,7 +142,7 @@ TEST_CASE("delimited text: compressed files are recognised by their first bytes"
     CHECK(read({folder.file("cut", cut)}, ',', {"a", "b"}) ==
           "error: the compressed file ends too early");
   }
-  std::string damaged = gzipped(text);
+  std::string damaged = gramproof::test::gzip(text);
   damaged[damaged.size() / 2] = static_cast<char>(~damaged[damaged.size() / 2]);
   CHECK(read({folder.file("damaged", damaged)}, ',', {"a"}).starts_with("error: "));
 }

@@ -239,6 +239,7 @@ std::vector<Sample> all() {
           {"beyond_doubles", beyond_doubles()},
           {"hostile", hostile()},
           {"within_rounding", within_rounding()},
+          {"within_recorded_precision", within_recorded_precision()},
           {"held_as_doubles", held_as_doubles()}};
 }
 

@@ -27,6 +27,7 @@ struct Sample {
 [[nodiscard]] audit::Audit beyond_doubles();  ///< condition number of which no digit is known
 [[nodiscard]] audit::Audit hostile();  ///< names that try to steer the terminal or to break lines
 [[nodiscard]] audit::Audit within_rounding();  ///< relations of logarithms that are not proved
+[[nodiscard]] audit::Audit within_recorded_precision();  ///< shares that sum to 100, but rounded
 [[nodiscard]] audit::Audit held_as_doubles();  ///< another rank once the entries are doubles
 
 [[nodiscard]] std::vector<Sample> all();

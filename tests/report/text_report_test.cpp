@@ -10,17 +10,12 @@
 #include "base/text.hpp"
 #include "report/sample_audits.hpp"
 #include "report/text_report.hpp"
+#include "support/lines.hpp"
 
 namespace {
 
 using namespace gramproof;
-
-std::vector<std::string> lines_of(const std::string& text) {
-  std::vector<std::string> lines;
-  std::istringstream stream(text);
-  for (std::string line; std::getline(stream, line);) lines.push_back(line);
-  return lines;
-}
+using test::lines_of;
 
 std::string read_file(const std::string& path) {
   std::ifstream stream(path, std::ios::binary);

@@ -10,17 +10,12 @@
 
 #include "base/text.hpp"
 #include "report/sample_audits.hpp"
+#include "support/lines.hpp"
 
 namespace {
 
 using namespace gramproof;
-
-std::vector<std::string> lines_of(const std::string& text) {
-  std::vector<std::string> lines;
-  std::istringstream stream(text);
-  for (std::string line; std::getline(stream, line);) lines.push_back(line);
-  return lines;
-}
+using test::lines_of;
 
 /// The text with each run of blanks and line breaks as one blank.
 std::string in_one_line(const std::string& text) {
@@ -120,7 +115,7 @@ TEST_CASE("a level of a full set: relation, alternatives, meanings, habits, caut
         "constant = [phase = active] + [phase = parked] + [phase = trial]",
         "This holds on all 4,812 rows used. It is proved in whole numbers",
         "until `[phase = trial]` (column 5 of 5) joins",
-        "Any one of `constant`, `[phase = active]` or `[phase = trial]`.",
+        "`constant`, `[phase = active]` or `[phase = trial]`.",
         "constant estimates constant + [phase = parked]",
         "[phase = active] estimates [phase = active] \u2212 [phase = parked]",
         "Untouched, with the meaning it has in the equation with all columns: `treated`.",

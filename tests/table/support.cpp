@@ -2,7 +2,6 @@
 
 #include <doctest/doctest.h>
 #include <stdlib.h>
-#include <zlib.h>
 #include <zstd.h>
 
 #include <filesystem>
@@ -53,20 +52,6 @@ TemporaryFolder::~TemporaryFolder() {
 std::string TemporaryFolder::write(const std::string& name, std::string_view bytes) const {
   std::ofstream(path(name), std::ios::binary) << bytes;
   return path(name);
-}
-
-std::string gzip(std::string_view bytes) {
-  z_stream stream{};
-  REQUIRE(deflateInit2(&stream, 6, Z_DEFLATED, 15 + 16, 8, Z_DEFAULT_STRATEGY) == Z_OK);
-  std::string packed(deflateBound(&stream, bytes.size()) + 64, '\0');
-  stream.next_in = reinterpret_cast<Bytef*>(const_cast<char*>(bytes.data()));
-  stream.avail_in = static_cast<uInt>(bytes.size());
-  stream.next_out = reinterpret_cast<Bytef*>(packed.data());
-  stream.avail_out = static_cast<uInt>(packed.size());
-  REQUIRE(deflate(&stream, Z_FINISH) == Z_STREAM_END);
-  packed.resize(stream.total_out);
-  deflateEnd(&stream);
-  return packed;
 }
 
 std::string zstd(std::string_view bytes) {

@@ -7,6 +7,7 @@
 #include <vector>
 
 #include "base/result.hpp"
+#include "support/gzip.hpp"
 #include "table/source.hpp"
 #include "table/survey.hpp"
 
@@ -27,7 +28,7 @@ class TemporaryFolder {
   std::string folder_;
 };
 
-[[nodiscard]] std::string gzip(std::string_view bytes);
+using gramproof::test::gzip;
 [[nodiscard]] std::string zstd(std::string_view bytes);
 
 /// All cells: plain text of numbers, levels of texts, none where missing.
